@@ -1,0 +1,3 @@
+"""What a surveyor computes about stakes: pure computation, arrays in, answers out."""
+
+from __future__ import annotations
