@@ -1,0 +1,56 @@
+"""Covariances between any points of an adjusted network, and shifts of all of them."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from geometry.adjust.datum import Datum
+from geometry.adjust.frontal import Factor
+from geometry.adjust.rows import Ints
+from geometry.checked import Array
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Solution:
+    """Where covariances between any points come from: the factor and the datum.
+
+    `columns` (n, w) are the unknowns of each point, -1 where held.
+    """
+
+    factor: Factor
+    columns: Ints
+    datum: Datum | None
+
+    def joint(self, at: Sequence[int]) -> Array:
+        """Joint covariance (k w, k w) of the points with these numbers, m²."""
+        columns = self.columns[list(at)].ravel()
+        used = columns >= 0
+        right = np.zeros((len(self.factor.scale), len(columns)))
+        right[columns[used], np.flatnonzero(used)] = 1.0
+        block = np.zeros((len(columns), len(columns)))
+        block[used] = self.factor.solve(right)[columns[used]]
+        block = 0.5 * (block + block.T)
+        if self.datum is None:
+            return block
+        width = self.columns.shape[1]
+        places = (np.array(at)[:, None] * width + np.arange(width)).ravel()
+        spread = self.datum.spread[places]
+        carried = np.where(used[:, None], self.datum.carried[columns], 0.0)
+        cross = carried @ spread.T
+        moved: Array = block - cross - cross.T + spread @ self.datum.inner @ spread.T
+        return moved
+
+    def shifts(self, right: Array) -> Array:
+        """Shift (n, w) of all points by a right-hand side of the normal equations."""
+        change = self.factor.solve(right)
+        used = self.columns >= 0
+        moved = np.zeros(self.columns.shape)
+        moved[used] = change[self.columns[used]]
+        if self.datum is not None:
+            flat = moved.ravel()
+            flat = flat - self.datum.spread @ (self.datum.gathered.T @ flat)
+            moved = flat.reshape(moved.shape)
+        return moved
