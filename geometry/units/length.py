@@ -19,6 +19,7 @@ from geometry.units.rounding import (
     as_decimal,
     checked_decimals,
     half_away,
+    nearest,
 )
 from geometry.units.unit import Unit
 
@@ -133,14 +134,9 @@ def _within(nanometres: int) -> int:
 
 def _shown(nanometres: int, unit: Unit, decimals: int) -> str:
     scale = 10 ** checked_decimals(decimals)
-    scaled = _in_unit(nanometres, unit) * scale
-    count = half_away(scaled)
-    if decimals <= _TIES_KEPT:
-        half = (abs(scaled) // 1) + Fraction(1, 2)
-        kept = _in_unit(1, unit) * scale / 2
-        if abs(abs(scaled) - half) < kept:
-            count = half_away(half if scaled > 0 else -half)
-    return as_decimal(count, decimals)
+    half_a_nanometre = _in_unit(1, unit) * scale / 2
+    noise = half_a_nanometre if decimals <= _TIES_KEPT else Fraction(0)
+    return as_decimal(nearest(_in_unit(nanometres, unit) * scale, noise), decimals)
 
 
 def _written(nanometres: int, unit: Unit) -> Length:

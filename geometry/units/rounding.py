@@ -21,6 +21,21 @@ def half_away(value: Fraction) -> int:
     return -nearest if value < 0 else nearest
 
 
+def nearest(value: Fraction, noise: Fraction) -> int:
+    """`half_away`, where a value less than `noise` from a half counts as that half.
+
+    A half that somebody entered is stored a hair to either side of it; the noise of
+    that storage must not decide which way it goes. Noise must be well under a half.
+
+    >>> nearest(Fraction(249999, 100000), Fraction(1, 10000))
+    3
+    """
+    half = abs(value) // 1 + Fraction(1, 2)
+    if abs(abs(value) - half) < noise:
+        return half_away(half if value > 0 else -half)
+    return half_away(value)
+
+
 def as_decimal(count: int, decimals: int) -> str:
     """`count` units of the last decimal as text; zero never has a sign.
 
