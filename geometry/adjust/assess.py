@@ -96,8 +96,8 @@ def _shift_of_ends(
     datum: Datum | None,
 ) -> Array:
     """The longest shift among the ends of each row for a whitened error of 1."""
-    width = columns.shape[1]
-    at = (ends[:, :, None] * width + np.arange(width)).reshape(len(ends), -1)
+    width, each = columns.shape[1], ends.shape[1]
+    at = (ends[:, :, None] * width + np.arange(width)).reshape(-1, each * width)
     used = np.repeat(ends >= 0, width, axis=1)
     shift = np.where(used, pulled[:, : at.shape[1]], 0.0)
     if datum is not None:
@@ -105,7 +105,7 @@ def _shift_of_ends(
         motion = np.einsum("ra,rad->rd", coefficients, carried)
         back = np.einsum("rad,rd->ra", datum.spread[np.where(used, at, 0)], motion)
         shift = np.where(used, shift - back, 0.0)
-    by_end = shift.reshape(len(ends), -1, width)
+    by_end = shift.reshape(-1, each, width)
     longest: Array = np.sqrt((by_end**2).sum(axis=2)).max(axis=1, initial=0.0)
     return longest
 
