@@ -1,4 +1,4 @@
-"""Arrays at the door of a computation: right shape, finite, or an error that says which."""
+"""Arrays at the door of a computation: right shape and finite, or a named error."""
 
 from __future__ import annotations
 
@@ -65,6 +65,14 @@ def positive(name: str, value: float) -> float:
         raise OutOfRange(
             f"{name} must be greater than zero.", where=f"It is {result:g}."
         )
+    return result
+
+
+def not_negative(name: str, value: float) -> float:
+    """`value` as a finite float of zero or more."""
+    result = number(name, value)
+    if result < 0:
+        raise OutOfRange(f"{name} must not be negative.", where=f"It is {result:g}.")
     return result
 
 
