@@ -1,8 +1,8 @@
 """Digits as they are shown: one rule that every language gives alike.
 
 Half of the last place goes away from zero, and so does what lies under half by less
-than a millionth of the last place: binary numbers lose that much, and a tie written on
-paper must not turn on it. Zero has no sign.
+than a ten-thousandth of the last place: differences of coordinates lose that much in
+floats, and a tie written on paper must not turn on it. Zero has no sign.
 """
 
 from __future__ import annotations
@@ -12,7 +12,7 @@ import math
 from geometry import checked
 from geometry.errors import OutOfRange
 
-TIE = 1e-6
+TIE = 1e-4
 """Share of the last place by which a tie may be missed and is still a tie."""
 
 MOST_PLACES = 9
