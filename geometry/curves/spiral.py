@@ -13,6 +13,8 @@ from geometry import checked
 from geometry.curves.clothoid import path
 from geometry.errors import OutOfRange
 
+_NO_LENGTH_M = 1e-9
+
 
 @dataclass(frozen=True, slots=True)
 class Spiral:
@@ -55,6 +57,7 @@ def spiral(radius_m: float, length_m: float) -> Spiral:
     length = checked.number("The spiral's length", length_m)
     if length < 0:
         raise OutOfRange("The spiral's length must not be negative.")
+    length = length if length > _NO_LENGTH_M else 0.0
     angle = length / (2 * radius)
     if angle >= math.pi / 2:
         raise OutOfRange(
@@ -107,14 +110,15 @@ def spiraled_curve(
             do="Use shorter spirals or a larger radius.",
         )
     inner, outer = radius_m + before.throw_m, radius_m + after.throw_m
-    sine, cosine = math.sin(turn), math.cos(turn)
+    # written so that a turn near zero keeps its digits
+    uneven, half = (outer - inner) / math.sin(turn), math.tan(turn / 2)
     arc = max(left, 0.0)
     return SpiraledCurve(
         entry=before,
         exit=after,
         arc_m=radius_m * arc,
         arc_rad=arc,
-        tangent_in_m=before.shift_along_m + (outer - inner * cosine) / sine,
-        tangent_out_m=after.shift_along_m + (inner - outer * cosine) / sine,
+        tangent_in_m=before.shift_along_m + uneven + inner * half,
+        tangent_out_m=after.shift_along_m - uneven + outer * half,
         length_m=before.length_m + radius_m * arc + after.length_m,
     )
