@@ -8,6 +8,7 @@ What was measured
 - `Distance`, `Direction`, `Angle`, `Azimuth`, `HeightDifference`: one measurement
 - `Coordinates`, `Heights`: known values with their joint covariance
 - `coordinates`, `heights`: the same from one sigma or a full covariance
+- `allow_for_centring`: sigmas widened by what centring adds
 
 What comes back
 - `NetworkAdjustment`, `LevelAdjustment`: everything about the adjusted network
@@ -27,6 +28,7 @@ Limits of tests
 
 from __future__ import annotations
 
+from geometry.adjust.centring import allow_for_centring
 from geometry.adjust.iterate import DoesNotSettle
 from geometry.adjust.levels import adjust_levels
 from geometry.adjust.measurements import MeasurementReport, Measurements
@@ -83,6 +85,7 @@ __all__ = [
     "Undetermined",
     "adjust_levels",
     "adjust_network",
+    "allow_for_centring",
     "coordinates",
     "critical_w",
     "detectable",

@@ -9,6 +9,7 @@ import numpy as np
 
 from geometry.adjust.datum import Datum
 from geometry.adjust.frontal import Factor
+from geometry.adjust.iterate import columns_of_inverse
 from geometry.adjust.rows import Ints
 from geometry.checked import Array
 
@@ -24,14 +25,16 @@ class Solution:
     columns: Ints
     datum: Datum | None
 
+    def columns_of_inverse(self, columns: Ints) -> Array:
+        """Some columns of the inverse normal matrix, zeros where a column is -1."""
+        return columns_of_inverse(self.factor, columns, len(self.factor.scale))
+
     def joint(self, at: Sequence[int]) -> Array:
         """Joint covariance (k w, k w) of the points with these numbers, m²."""
         columns = self.columns[list(at)].ravel()
         used = columns >= 0
-        right = np.zeros((len(self.factor.scale), len(columns)))
-        right[columns[used], np.flatnonzero(used)] = 1.0
         block = np.zeros((len(columns), len(columns)))
-        block[used] = self.factor.solve(right)[columns[used]]
+        block[used] = self.columns_of_inverse(columns)[columns[used]]
         block = 0.5 * (block + block.T)
         if self.datum is None:
             return block
