@@ -1,0 +1,1 @@
+"""The only place that knows the whole program: settings, addresses, the worker."""
