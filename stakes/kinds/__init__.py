@@ -1,0 +1,25 @@
+"""Every kind of entry of this package; importing it registers them all."""
+
+from __future__ import annotations
+
+from stakes.kinds import (
+    checking,
+    condition,
+    control,
+    correcting,
+    planning,
+    setting,
+    setups,
+    sheets,
+)
+
+__all__ = [
+    "checking",
+    "condition",
+    "control",
+    "correcting",
+    "planning",
+    "setting",
+    "setups",
+    "sheets",
+]
