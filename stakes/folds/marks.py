@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections import defaultdict
 from collections.abc import Iterable, Sequence
 from dataclasses import asdict
+from datetime import datetime
 from typing import Any
 from uuid import UUID
 
@@ -77,6 +78,26 @@ class MarkRows:
             rows.append(row)
             stakes += [_stake_row(record, mark, stake) for stake in state.stakes]
         _save(record, marks, replan, rows, stakes)
+
+
+def plan_rows(
+    record: Record,
+    overruled: dict[int, int],
+    at: datetime | None = None,
+    known: int | None = None,
+) -> dict[UUID, Mark]:
+    """The plan side of every mark: the stored rows now, folded anew for a past (T, K)."""
+    if at is None and known is None:
+        return Mark.objects.filter(record=record).in_bulk()
+    entries = Entry.objects.filter(record=record, kind__in=PLAN_KINDS)
+    entries = entries.filter(happened_at__lte=at) if at else entries
+    entries = entries.filter(number__lte=known) if known is not None else entries
+    found: dict[UUID, Mark] = {}
+    for entry in entries.order_by("happened_at", "counter", "place", "number"):
+        counted = reading.decoded(entry, overruled)
+        if counted.counts:
+            _take(record, found, counted)
+    return found
 
 
 def _save(
@@ -152,18 +173,28 @@ def _plans(
 
 def _planned(record: Record, mark: UUID, said: list[reading.Counted]) -> Mark | None:
     """The plan side of a mark's row; None when no counting entry plans it."""
-    row: Mark | None = None
+    found: dict[UUID, Mark] = {}
     for counted in said:
-        match counted.fact:
-            case MarksPlanned(rows=rows):
-                planned = next((r for r in rows if r.mark == mark), None)
-                if planned is not None:
-                    row = _row(record, planned, counted.number)
-            case ForeignMarkFound() as found:
-                row = _row(record, _foreign(found), counted.number)
-            case ValueAdopted() as value if row is not None:
-                _adopt(row, value)
-    return row
+        _take(record, found, counted, only=mark)
+    return found.get(mark)
+
+
+def _take(
+    record: Record,
+    found: dict[UUID, Mark],
+    counted: reading.Counted,
+    only: UUID | None = None,
+) -> None:
+    """Let one counting entry say where its marks are planned and what their value is."""
+    match counted.fact:
+        case MarksPlanned(rows=rows):
+            for planned in rows:
+                if only is None or planned.mark == only:
+                    found[planned.mark] = _row(record, planned, counted.number)
+        case ForeignMarkFound() as foreign:
+            found[foreign.mark] = _row(record, _foreign(foreign), counted.number)
+        case ValueAdopted() as value if value.mark in found:
+            _adopt(found[value.mark], value)
 
 
 def _row(record: Record, planned: PlannedMark, number: int) -> Mark:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections import defaultdict
 from collections.abc import Iterable, Sequence
+from datetime import datetime
 from typing import Any
 from uuid import UUID
 
@@ -79,6 +80,27 @@ def effects_of(
     ):
         if number not in overruled:
             found[key].append(Effect(at, number, effect))
+    return found
+
+
+def opened_setups(
+    record: Record,
+    overruled: dict[int, int],
+    at: datetime | None = None,
+    known: int | None = None,
+) -> dict[UUID, Setup]:
+    """Every setup's row: as stored now, made anew for a past (T, K)."""
+    if at is None and known is None:
+        return Setup.objects.filter(record=record).in_bulk()
+    entries = Entry.objects.filter(record=record, kind=SetupOpened.KIND)
+    entries = entries.filter(happened_at__lte=at) if at else entries
+    entries = entries.filter(number__lte=known) if known is not None else entries
+    found = {}
+    for entry in entries.order_by("happened_at", "counter", "place", "number"):
+        counted = reading.decoded(entry, overruled)
+        if counted.counts:
+            row = _row(record, counted, standing.SetupState())
+            found[row.key] = row
     return found
 
 

@@ -84,7 +84,7 @@ class StakeChecked(Fact, kw_only=True):
 
 @kind("judged again")
 class JudgedAgain(Fact, kw_only=True):
-    """A check was judged again because inputs or methods changed; the measurement stands."""
+    """A check was judged again: inputs or methods changed, the measurement stands."""
 
     check: UUID
     listed: tuple[UUID, ...]

@@ -156,12 +156,13 @@ def test_replace_does_not_slip_past_the_triggers() -> None:
         "id, record_id, number, kind, key, act, happened_at, recorded_at, counter,"
     )
     columns += " place, person, name, device, known, withdraws, body, said, leaf"
-    with pytest.raises(IntegrityError), transaction.atomic():
-        with connection.cursor() as cursor:
-            cursor.execute(
-                f"INSERT OR REPLACE INTO stakes_entry ({columns}) SELECT {columns} "
-                "FROM stakes_entry"
-            )
+    copy = f"INSERT OR REPLACE INTO stakes_entry ({columns}) SELECT {columns}"
+    with (
+        pytest.raises(IntegrityError),
+        transaction.atomic(),
+        connection.cursor() as cursor,
+    ):
+        cursor.execute(f"{copy} FROM stakes_entry")
 
 
 def test_a_replacement_takes_the_place_of_its_target_and_both_are_kept() -> None:

@@ -1,4 +1,4 @@
-"""Addresses under one job: plan, marks, control, setups, record."""
+"""Addresses under one job, gathered from one file per area."""
 
 from __future__ import annotations
 

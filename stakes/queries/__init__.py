@@ -1,0 +1,1 @@
+"""Questions asked of the record and its read models; nothing here writes."""
