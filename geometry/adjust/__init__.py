@@ -18,6 +18,9 @@ What comes back
 - `GroupPrecision`: observed over given precision of one kind of measurement
 - `GlobalTest`: the test of the whole
 
+In words
+- `say_adjustment`, `say_measurement`: sentences built from a result
+
 When it cannot answer
 - `Undetermined`: which points nothing holds and what would (`Loose`, `Missing`)
 - `DoesNotSettle`: start coordinates too far from the measurements
@@ -61,6 +64,7 @@ from geometry.adjust.report import (
     PointReport,
 )
 from geometry.adjust.undetermined import Loose, Missing, Undetermined
+from geometry.adjust.words import say_adjustment, say_measurement
 
 __all__ = [
     "Angle",
@@ -93,4 +97,6 @@ __all__ = [
     "heights",
     "matching_alpha",
     "noncentrality",
+    "say_adjustment",
+    "say_measurement",
 ]

@@ -126,6 +126,7 @@ def _report(
         names=model.names,
         groups=group_precision(kinds, ("levels",), done.assessment, measured.in_use),
         free_datum=marks,
+        motions=("shift",) if free else (),
         rows=design(found.rows, model.count, np.ones(len(runs))),
         places={name: i for i, name in enumerate(model.names)},
         heights_m=heights + (0.0 if free else model.origin),

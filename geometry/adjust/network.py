@@ -155,6 +155,9 @@ def _report(
         names=model.names,
         groups=group_precision(table.kind, KINDS, done.assessment, measured.in_use),
         free_datum=marks,
+        motions=("shift", *(m for m, on in _motions(model).items() if on))
+        if marks
+        else (),
         rows=design(found.rows, model.count, np.ones(len(table.kind))),
         places={name: i for i, name in enumerate(model.names)},
         positions_m=positions + model.origin,

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 import numpy as np
@@ -107,7 +107,23 @@ def _known(
             reports.append(
                 _known_report(names[int(i)], judged.difference_m[own], w, seen, limit)
             )
-    return tuple(reports)
+    return _worst_blamed(reports)
+
+
+def _worst_blamed(reports: list[KnownReport]) -> tuple[KnownReport, ...]:
+    """Of known points that do not fit only the worst fails: it may have spoilt the rest."""
+    failed = [k for k in reports if k.verdict == Verdict.FAIL]
+    worst = max(failed, key=lambda k: k.w, default=None)
+    return tuple(
+        replace(
+            k,
+            verdict=Verdict.AMBIGUOUS,
+            reason="It does not fit the measurements, nor does another that fits worse.",
+        )
+        if k in failed and k is not worst
+        else k
+        for k in reports
+    )
 
 
 def _known_report(
@@ -136,8 +152,8 @@ def _whole(
     if not test.dof:
         return Verdict.NOT_TESTED, "There is no measurement to spare: nothing checks."
     if searched.control or bad_known:
-        which = ", ".join(bad_known) or "a known point"
-        return Verdict.FAIL, f"The measurements do not fit the known values of {which}."
+        worst = f", worst at {bad_known[0]}" if bad_known else ""
+        return Verdict.FAIL, f"The measurements do not fit the known values{worst}."
     if searched.ambiguous:
         return (
             Verdict.AMBIGUOUS,

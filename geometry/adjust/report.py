@@ -88,7 +88,8 @@ class Adjustment:
     Sigmas are taken as known: covariances are not scaled. `sigma0` is the square root
     of the variance factor, for information. `set_aside`, `readmitted` and the sets in
     `ambiguous` are numbers of measurements in the order given. `free_datum` names the
-    marks that carry the datum of a free network, empty otherwise.
+    marks that carry the datum of a free network and `motions` what nothing in it
+    holds (shift, turn, scale); both empty otherwise.
     """
 
     names: tuple[str, ...]
@@ -108,6 +109,7 @@ class Adjustment:
     unchecked: tuple[str, ...]
     groups: tuple[GroupPrecision, ...]
     free_datum: tuple[str, ...]
+    motions: tuple[str, ...]
     method: str
     steps: int
     solution: Solution = field(repr=False)

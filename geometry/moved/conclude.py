@@ -129,6 +129,8 @@ def _suspects(
 ) -> Suspects:
     for one in found.named:
         evidence = without(evidence, one)
+    # In the order of the marks: the order of the scores would read like a ranking.
+    group = tuple(sorted(group, key=lambda s: (not s.is_mark, s.index)))
     moves = []
     for one in (s for s in group if s.is_mark):
         own = evidence.own(one.index)

@@ -22,62 +22,66 @@ ENOUGH_SIGMAS = 3.0
 TRIED_MARKS = 40
 
 
-def tell_plane(
-    net: NetworkAdjustment,
-    recorded: Coordinates,
-    evidence: Evidence,
-    suspects: Sequence[Suspicion],
+Shift = tuple[str, Array]
+"""An explanation in words, and what it does to the place of each mark, (k, w)."""
+
+
+def tell(
+    names: Sequence[str],
+    places_m: Array,
+    joint_m2: Array,
+    shifts: Sequence[Shift],
     sigma_m: float,
 ) -> Tell | None:
-    """The distance between two marks that tells these suspects apart best."""
-    names = recorded.names[:TRIED_MARKS]
-    at = [net.number(n) for n in names]
-    joint = net.joint_covariance(names)
-    shifts = _shifts(net, recorded, evidence, suspects)
+    """The distance (or rise) between two marks that tells explanations apart best.
+
+    `places_m` (k, w) are the adjusted marks, `joint_m2` (k w, k w) their covariance.
+    None when no pair of marks would.
+    """
+    width = places_m.shape[1]
     best: Tell | None = None
-    for a, b in combinations(range(len(names)), 2):
-        delta = net.positions_m[at[b]] - net.positions_m[at[a]]
-        length = math.hypot(*delta)
-        if length < 1e-3:
-            continue
-        unit = delta / length
-        row = np.zeros(2 * len(names))
-        row[2 * a : 2 * a + 2], row[2 * b : 2 * b + 2] = -unit, unit
-        variance = sigma_m**2 + float(row @ joint @ row)
-        values = [
-            (word, length + float(unit @ (s[at[b]] - s[at[a]]))) for word, s in shifts
-        ]
-        sigmas = _apart([v for _, v in values]) / math.sqrt(variance)
+    for a, b in combinations(range(min(len(names), TRIED_MARKS)), 2):
+        value, unit = _between(places_m[a], places_m[b])
+        row = np.zeros(joint_m2.shape[0])
+        row[width * a : width * (a + 1)] = -unit
+        row[width * b : width * (b + 1)] = unit
+        spread = math.sqrt(sigma_m**2 + float(row @ joint_m2 @ row))
+        values = [(word, value + float(unit @ (s[b] - s[a]))) for word, s in shifts]
+        sigmas = _apart([v for _, v in values]) / spread
         if sigmas >= ENOUGH_SIGMAS and (best is None or sigmas > best.sigmas):
             ends = (names[a], names[b])
-            words = f"distance {ends[0]} to {ends[1]}"
+            kind = "distance" if width == 2 else "levels"
+            words = f"{kind} {ends[0]} to {ends[1]}"
             best = Tell(words, ends, tuple(values), sigmas)
     return best
 
 
-def tell_heights(
-    net: LevelAdjustment,
-    recorded: Heights,
+def _between(start: Array, end: Array) -> tuple[float, Array]:
+    """Distance and unit vector in the plane, rise and 1 in height."""
+    delta = end - start
+    if len(delta) == 1:
+        return float(delta[0]), np.ones(1)
+    length = math.hypot(*delta)
+    return length, delta / max(length, 1e-9)
+
+
+def tell_between_marks(
+    net: NetworkAdjustment | LevelAdjustment,
+    recorded: Coordinates | Heights,
     evidence: Evidence,
     suspects: Sequence[Suspicion],
     sigma_m: float,
 ) -> Tell | None:
-    """The rise between two benchmarks that tells these suspects apart best."""
-    names = recorded.names[:TRIED_MARKS]
+    """The same for suspects from measurements against a record."""
+    names = recorded.names
     at = [net.number(n) for n in names]
-    joint = net.joint_covariance(names)
+    if isinstance(net, NetworkAdjustment):
+        places = net.positions_m
+    else:
+        places = net.heights_m[:, None]
     shifts = _shifts(net, recorded, evidence, suspects)
-    best: Tell | None = None
-    for a, b in combinations(range(len(names)), 2):
-        rise = float(net.heights_m[at[b]] - net.heights_m[at[a]])
-        spread = float(joint[a, a] + joint[b, b] - 2 * joint[a, b])
-        values = [(word, rise + float(s[at[b], 0] - s[at[a], 0])) for word, s in shifts]
-        variance = sigma_m**2 + spread
-        sigmas = _apart([v for _, v in values]) / math.sqrt(variance)
-        if sigmas >= ENOUGH_SIGMAS and (best is None or sigmas > best.sigmas):
-            ends = (names[a], names[b])
-            best = Tell(f"levels {ends[0]} to {ends[1]}", ends, tuple(values), sigmas)
-    return best
+    own = [(word, shift[at]) for word, shift in shifts]
+    return tell(names, places[at], net.joint_covariance(names), own, sigma_m)
 
 
 def _apart(values: list[float]) -> float:
@@ -92,7 +96,7 @@ def _shifts(
     recorded: Coordinates | Heights,
     evidence: Evidence,
     suspects: Sequence[Suspicion],
-) -> list[tuple[str, Array]]:
+) -> list[Shift]:
     """What each explanation does to the adjusted points, (n, w) each."""
     weight = weight_of(recorded.covariance_m2, "the recorded marks")
     columns = net.solution.columns[[net.number(n) for n in recorded.names]].ravel()

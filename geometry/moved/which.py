@@ -21,7 +21,7 @@ from geometry.checked import Array
 from geometry.moved.answer import MovedAnswer
 from geometry.moved.conclude import conclude
 from geometry.moved.evidence import Evidence
-from geometry.moved.tell import tell_heights, tell_plane
+from geometry.moved.tell import tell_between_marks
 
 
 def which_moved(
@@ -74,7 +74,7 @@ def which_moved(
     return conclude(
         evidence, recorded.names, [str(o) for o in observations], alpha, power,
         global_alpha,
-        lambda group: tell_plane(net, recorded, evidence, group, tell_sigma_m),
+        lambda group: tell_between_marks(net, recorded, evidence, group, tell_sigma_m),
     )  # fmt: skip
 
 
@@ -112,7 +112,7 @@ def which_benchmark_moved(
     )
     return conclude(
         evidence, recorded.names, [str(r) for r in runs], alpha, power, global_alpha,
-        lambda group: tell_heights(net, recorded, evidence, group, tell_sigma_m),
+        lambda group: tell_between_marks(net, recorded, evidence, group, tell_sigma_m),
     )  # fmt: skip
 
 
