@@ -10,6 +10,9 @@ from geometry.errors import NotFinite, OutOfRange, WrongShape
 Array = NDArray[np.float64]
 """Float64 array; shapes stand in each docstring."""
 
+Flags = NDArray[np.bool_]
+Indices = NDArray[np.intp]
+
 LARGEST_M = 1e8
 """No coordinate on Earth, in any plane frame in use, is farther from its origin."""
 
