@@ -1,0 +1,13 @@
+"""The jobs app: people, seats and jobs. Its kinds and folds register on start."""
+
+from __future__ import annotations
+
+from django.apps import AppConfig
+
+
+class JobsConfig(AppConfig):
+    name = "jobs"
+    verbose_name = "Jobs"
+
+    def ready(self) -> None:
+        from jobs import folds, kinds  # noqa: F401  (they register themselves)

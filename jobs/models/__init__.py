@@ -1,0 +1,23 @@
+"""Tables of jobs: people and tokens; jobs, seats and terms folded from the record."""
+
+from __future__ import annotations
+
+from jobs.models.job import Job, Term
+from jobs.models.people import Company, CompanyKind, Crew, FirmRole, FirmSpell, User
+from jobs.models.seats import Seat
+from jobs.models.sign_in import Outcome, SignInAttempt, Token
+
+__all__ = [
+    "Company",
+    "CompanyKind",
+    "Crew",
+    "FirmRole",
+    "FirmSpell",
+    "Job",
+    "Outcome",
+    "Seat",
+    "SignInAttempt",
+    "Term",
+    "Token",
+    "User",
+]
