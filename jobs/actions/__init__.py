@@ -1,0 +1,1 @@
+"""What people do: bare verbs, one subject a file. Rules live here and nowhere else."""

@@ -1,0 +1,40 @@
+"""What a job's terms may hold: checks that more than one action makes."""
+
+from __future__ import annotations
+
+from decimal import Decimal, InvalidOperation
+from zoneinfo import available_timezones
+
+from stakes.record import Refused
+
+PLAUSIBLE_FACTOR = (Decimal("0.99"), Decimal("1.01"))
+"""Grid over ground: beyond 1 part in 100 the number is something else."""
+
+
+def refuse_zone(zone: str) -> None:
+    """Time zones are those of the IANA list, which knows every change of summer time."""
+    if zone not in available_timezones():
+        raise Refused(
+            f"{zone!r} is not a time zone of the IANA list.",
+            do="Choose one like America/Chicago or Europe/Berlin.",
+            field="zone",
+        )
+
+
+def checked_factor(text: str) -> str:
+    """A combined factor as printed; an empty one means ground distances."""
+    if not text.strip():
+        return ""
+    try:
+        factor = Decimal(text.strip())
+    except InvalidOperation:
+        factor = Decimal("NaN")
+    low, high = PLAUSIBLE_FACTOR
+    if not factor.is_finite() or not low <= factor <= high:
+        raise Refused(
+            f"{text.strip()!r} is not a combined factor.",
+            where="It is grid over ground and lies close to 1, like 0.99985932.",
+            do="Copy it from the sheet, or leave it empty for ground distances.",
+            field="combined_factor",
+        )
+    return text.strip()

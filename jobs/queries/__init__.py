@@ -1,0 +1,1 @@
+"""Questions: they only read."""
