@@ -89,7 +89,7 @@ def height_model(
         raise EmptyInput("There is no levelling to adjust.", do="Give a run.")
     number = {name: i for i, name in enumerate(names)}
     for one in observations:
-        check_measurement(str(one), (one.start, one.end), one.value_m, one.sigma_m)
+        check_measurement(one, (one.start, one.end), one.value_m, one.sigma_m)
     first, second = (
         np.array([number[n] for n in ends], dtype=np.intp)
         for ends in ([o.start for o in observations], [o.end for o in observations])

@@ -7,6 +7,7 @@ control that was surveyed together errs together.
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 from dataclasses import dataclass
 
@@ -168,23 +169,26 @@ def _joint(
 
 
 def check_measurement(
-    words: str, ends: tuple[str, ...], value: float, sigma: float
+    one: PlaneObservation | HeightDifference,
+    ends: tuple[str, ...],
+    value: float,
+    sigma: float,
 ) -> None:
     """Refuse a measurement that no adjustment could use, naming it."""
-    if not (np.isfinite(value) and np.isfinite(sigma)):
+    if not (math.isfinite(value) and math.isfinite(sigma)):
         raise NotFinite(
             "A measurement is missing or not finite.",
-            where=f"It is the {words}.",
+            where=f"It is the {one}.",
             do="Fill in the value and its standard deviation, or leave it out.",
         )
     if sigma <= 0:
         raise OutOfRange(
             "A standard deviation must be greater than zero.",
-            where=f"It belongs to the {words}.",
+            where=f"It belongs to the {one}.",
             do="Give the precision of the instrument; hold a point fixed instead.",
         )
     if len(set(ends)) != len(ends):
         raise CoincidentPoints(
             "A measurement needs different points at its ends.",
-            where=f"It is the {words}.",
+            where=f"It is the {one}.",
         )

@@ -148,7 +148,7 @@ def plane_model(
     origin = np.round(start.mean(axis=0), 3)
     start = start - origin
     for name in fixed:
-        _at(number, name, "the fixed points")
+        _at(number, name, "fixed points")
     held = np.zeros((len(names), 2), dtype=np.bool_)
     held[[number[name] for name in fixed]] = True
     for name, axis in also_held:
@@ -174,11 +174,11 @@ def _pair(name: str, values: ArrayLike) -> Array:
     return array
 
 
-def _at(number: Mapping[str, int], name: str, where: str) -> int:
+def _at(number: Mapping[str, int], name: str, where: object) -> int:
     if name not in number:
         raise OutOfRange(
             f"Point {name} has no start coordinates.",
-            where=f"It stands in {where}.",
+            where=f"It stands in the {where}.",
             do="Give its design or approximate coordinates, or correct the name.",
         )
     return number[name]
@@ -186,7 +186,7 @@ def _at(number: Mapping[str, int], name: str, where: str) -> int:
 
 def _known(number: Mapping[str, int], origin: Array, group: Coordinates) -> Known:
     words = "the known points " + ", ".join(group.names[:4])
-    at = np.array([_at(number, n, words) for n in group.names], dtype=np.intp)
+    at = np.array([_at(number, n, "known points") for n in group.names], dtype=np.intp)
     values = checked.points("known coordinates", group.values_m) - origin
     joint = checked.covariance("known covariance", group.covariance_m2, 2 * len(at))
     return Known(at, values, weight_of(joint, words))
@@ -200,8 +200,8 @@ def _table(
     rounds: dict[tuple[str, str], int] = {}
     for i, one in enumerate(observations):
         kind, ends, value, sigma = _taken_apart(one)
-        check_measurement(str(one), ends, value, sigma)
-        at = [_at(number, name, f"the {one}") for name in ends]
+        check_measurement(one, ends, value, sigma)
+        at = [_at(number, name, one) for name in ends]
         turn = -1
         if isinstance(one, Direction):
             turn = rounds.setdefault((one.station, one.round_name), len(rounds))

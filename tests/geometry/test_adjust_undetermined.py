@@ -192,7 +192,7 @@ def test_adding_what_is_proposed_always_makes_the_network_solvable(seed):
 
 
 def test_in_a_large_network_the_one_loose_point_is_found_among_thousands():
-    side = 25
+    side = 22
     grid = np.stack(np.meshgrid(np.arange(side), np.arange(side)), -1).reshape(-1, 2)
     start = {f"{i}": 30.0 * p for i, p in enumerate(grid)}
     booked = []
@@ -203,9 +203,9 @@ def test_in_a_large_network_the_one_loose_point_is_found_among_thousands():
                 j = int(q[0] + side * q[1])
                 booked.append(Distance(f"{i}", f"{j}", 30 * math.hypot(*step), 0.002))
     start["loose"] = np.array([1000.0, 10.0])
-    booked.append(Distance("24", "loose", math.dist(start["24"], (1000, 10)), 0.002))
+    booked.append(Distance("21", "loose", math.dist(start["21"], (1000, 10)), 0.002))
     with pytest.raises(Undetermined) as caught:
-        adjust_network(start, booked, fixed=["0", "24"])
+        adjust_network(start, booked, fixed=["0", "21"])
 
     assert [one.point for one in caught.value.loose] == ["loose"]
 
