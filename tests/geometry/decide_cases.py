@@ -25,7 +25,9 @@ ABOUT = (
     "|d| >= T + g, and is undecided between or without an uncertainty. Lengths that "
     "differ by up to 1e-8 are equal. Digits: half of the last place goes away from "
     "zero, and so does what lies under half by less than a ten-thousandth of the last "
-    "place; zero has no sign."
+    "place; zero has no sign. Polar numbers: azimuth from north, clockwise; the angle "
+    "right is turned from the backsight to the target; degrees, minutes and seconds "
+    "carry at 60 and 360. Cut is stake above design."
 )
 
 
@@ -164,6 +166,75 @@ def digits_case(rng: random.Random) -> dict[str, object] | None:
     return {"value": f"{value:f}", "places": places, "shown": rounded(value, places)}
 
 
+def arctan(x: Decimal) -> Decimal:
+    """Halved until small, then the series; exact to fifty digits."""
+    doublings = 0
+    while abs(x) > Decimal("0.01"):
+        x, doublings = x / (1 + (1 + x * x).sqrt()), doublings + 1
+    term, total, n = x, Decimal(0), 1
+    while abs(term) > Decimal(10) ** -58:
+        total, term, n = total + term / n, -term * x * x, n + 2
+    return total * 2**doublings
+
+
+PI = 4 * arctan(Decimal(1))
+
+
+def azimuth_seconds(east: Decimal, north: Decimal) -> Decimal:
+    """Seconds of arc clockwise from north, 0 to 1,296,000."""
+    if abs(east) < abs(north):
+        angle = arctan(east / north) + (PI if north < 0 else 0)
+    else:
+        angle = PI / 2 - arctan(north / east) + (PI if east < 0 else 0)
+    return (angle * 648_000 / PI) % 1_296_000
+
+
+def dms(seconds: Decimal) -> str:
+    whole = int(seconds.quantize(Decimal(1), rounding=ROUND_HALF_UP)) % 1_296_000
+    degrees, rest = divmod(whole, 3600)
+    return f"{degrees}°{rest // 60:02d}'{rest % 60:02d}\""
+
+
+def polar_case(rng: random.Random) -> dict[str, object] | None:
+    places = rng.choice((2, 3))
+    base = rng.choice(((0, 0), (5_000, 10_000), (600_000, 4_200_000)))
+    station, backsight, target = (
+        [text(rng, origin - 150, origin + 150, 3) for origin in base] for _ in range(3)
+    )
+    if rng.random() < 0.2:
+        target[rng.randrange(2)] = station[0]
+    s, b, t = ([Decimal(x) for x in p] for p in (station, backsight, target))
+    east, north = t[0] - s[0], t[1] - s[1]
+    distance = (east * east + north * north).sqrt()
+    if distance < 1 or abs(b[0] - s[0]) + abs(b[1] - s[1]) < 1:
+        return None
+    azimuth = azimuth_seconds(east, north)
+    angle = (azimuth - azimuth_seconds(b[0] - s[0], b[1] - s[1])) % 1_296_000
+    exact = (azimuth, 0), (angle, 0), (distance, places)
+    if not all(steady(value, digits) for value, digits in exact):
+        return None
+    return {
+        "station": station,
+        "backsight": backsight,
+        "target": target,
+        "places": places,
+        "azimuth": dms(azimuth),
+        "angle_right": dms(angle),
+        "distance": rounded(distance, places),
+    }
+
+
+def cut_case(rng: random.Random) -> dict[str, object] | None:
+    design = text(rng, -20, 1500, 2)
+    amount = Decimal(text(rng, -9, 9, 3)) * rng.choice((1, 1, Decimal("0.001")))
+    if not steady(amount, 2):
+        return None
+    digits = rounded(abs(amount), 2)
+    word = "on grade" if Decimal(digits) == 0 else "cut" if amount > 0 else "fill"
+    stake = Decimal(design) + amount
+    return {"stake": f"{stake:f}", "design": design, "word": word, "shown": digits}
+
+
 def gather(make, rng: random.Random, count: int) -> list[dict[str, object]]:
     cases: list[dict[str, object]] = []
     while len(cases) < count:
@@ -180,6 +251,8 @@ def cases() -> dict[str, object]:
         "offsets": gather(offset_case, rng, 160),
         "positions": gather(position_case, rng, 120),
         "digits": gather(digits_case, rng, 80),
+        "polar": gather(polar_case, rng, 80),
+        "cuts": gather(cut_case, rng, 40),
     }
 
 
@@ -188,10 +261,12 @@ def written(content: dict[str, object]) -> str:
     parts = [f' "about": {json.dumps(content["about"])}']
     for name, rows in content.items():
         if name != "about":
-            lines = ",\n".join("  " + json.dumps(row) for row in rows)
+            lines = ",\n".join(
+                "  " + json.dumps(row, ensure_ascii=False) for row in rows
+            )
             parts.append(f' "{name}": [\n{lines}\n ]')
     return "{\n" + ",\n".join(parts) + "\n}\n"
 
 
 if __name__ == "__main__":
-    PATH.write_text(written(cases()))
+    PATH.write_text(written(cases()), encoding="utf-8")
