@@ -11,3 +11,4 @@ class JobsConfig(AppConfig):
 
     def ready(self) -> None:
         from jobs import folds, kinds  # noqa: F401  (they register themselves)
+        from jobs.queries import cards  # noqa: F401

@@ -1,0 +1,1 @@
+"""Pages: door, form, verb, answer. No rule lives here."""
