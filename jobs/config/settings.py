@@ -122,6 +122,7 @@ TEMPLATES = [
 ]
 STATIC_URL = "/static/"
 STATIC_ROOT = DATA_DIR / "static"
+STATIC_ROOT.mkdir(exist_ok=True)
 # Files are served from the packages themselves: nothing to collect before the first start.
 WHITENOISE_USE_FINDERS = True
 WHITENOISE_AUTOREFRESH = DEBUG
