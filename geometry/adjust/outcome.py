@@ -17,7 +17,7 @@ from geometry.adjust.observations import HeightDifference, PlaneObservation
 from geometry.adjust.reliability import GlobalTest, critical_w, global_test
 from geometry.adjust.report import GroupPrecision, KnownReport
 from geometry.adjust.rows import Ints
-from geometry.adjust.snooping import Snooped, removal_limit
+from geometry.adjust.snooping import Snooped, removal_alpha, removal_limit
 from geometry.adjust.solution import Solution
 from geometry.checked import Array
 from geometry.verdicts import Verdict
@@ -56,7 +56,9 @@ def outcome(
     `known_at` the points of each group of known values.
     """
     found = searched.found
-    judged = assess(found, columns, ends, datum, alpha, power)
+    # An error is promised to be found only by the limit that is really applied.
+    applied = removal_alpha(len(searched.weights), alpha)
+    judged = assess(found, columns, ends, datum, applied, power)
     solution = Solution(found.factor, columns, datum)
     dof = _degrees(searched, len(found.unknowns))
     test = global_test(found.squares, dof, global_alpha)

@@ -28,7 +28,7 @@ from geometry.adjust.reliability import critical_w
 from geometry.adjust.rows import Flags, Ints, Model, design
 from geometry.checked import Array
 
-FAMILY_ALPHA = 0.05
+FAMILY_ALPHA = 0.02
 """Chance that a clean network loses any measurement at all."""
 
 
@@ -51,12 +51,17 @@ def removal_limit(count: int, alpha: float) -> float:
     """Largest |w| a good measurement among `count` is allowed.
 
     The limit of one test, or wider so that all together raise a false alarm in at
-    most one network of twenty.
+    most one network of fifty.
 
     >>> round(removal_limit(10, 0.001), 2), round(removal_limit(500, 0.001), 2)
-    (3.29, 3.89)
+    (3.29, 4.11)
     """
-    return max(critical_w(alpha), critical_w(FAMILY_ALPHA / max(count, 1)))
+    return critical_w(removal_alpha(count, alpha))
+
+
+def removal_alpha(count: int, alpha: float) -> float:
+    """The level of one test that goes with `removal_limit`."""
+    return min(alpha, FAMILY_ALPHA / max(count, 1))
 
 
 def snoop(

@@ -244,8 +244,8 @@ def test_limits_of_chi_square_and_others_are_those_of_the_published_tables():
 
 def test_many_measurements_widen_the_limit_so_that_a_clean_net_stays_whole():
     assert removal_limit(10, 0.001) == pytest.approx(3.2905, abs=5e-5)
-    # 1 - 0.05 / 1000 of a two-sided normal
-    assert removal_limit(500, 0.001) == pytest.approx(3.8906, abs=5e-5)
+    # two-sided normal at 0.02 / 500
+    assert removal_limit(500, 0.001) == pytest.approx(4.1075, abs=5e-5)
 
 
 @pytest.mark.parametrize("alpha", [0.0, 1.0, -0.1, math.nan])

@@ -1,0 +1,3 @@
+"""Nominal against simulated error rates; scripts with fixed seeds, never collected."""
+
+from __future__ import annotations
