@@ -32,7 +32,8 @@ def sha256_hex(data: bytes) -> str:
 
 def moment_text(moment: datetime) -> str:
     """A moment as it is hashed: UTC, always six decimals, closed by Z."""
-    return moment.astimezone(UTC).strftime("%Y-%m-%dT%H:%M:%S.%fZ")
+    text = moment.astimezone(UTC).isoformat(timespec="microseconds")
+    return text.removesuffix("+00:00") + "Z"
 
 
 def moment_of(text: str) -> datetime:
