@@ -38,3 +38,17 @@ def checked_factor(text: str) -> str:
             field="combined_factor",
         )
     return text.strip()
+
+
+def checked_text(text: str, field: str, *, most: int, required: bool = True) -> str:
+    """A text without blanks around it, refused when it is missing or too long."""
+    text = text.strip()
+    if required and not text:
+        raise Refused(f"The {field} is missing.", do="Write it.", field=field)
+    if len(text) > most:
+        raise Refused(
+            f"The {field} has {len(text)} characters.",
+            do=f"Shorten it to {most}.",
+            field=field,
+        )
+    return text

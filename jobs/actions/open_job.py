@@ -11,7 +11,7 @@ from django.db import IntegrityError, transaction
 from django.utils import timezone
 
 from geometry.units import Unit
-from jobs.actions.checked import checked_factor, refuse_zone
+from jobs.actions.checked import checked_factor, checked_text, refuse_zone
 from jobs.defaults import HOLD_MINUTES, default_classes, default_payers
 from jobs.kinds.opening import JobClosed, JobDescribed, JobOpened, JobReopened
 from jobs.kinds.terms import (
@@ -46,14 +46,14 @@ def open_job(
     at: datetime | None = None,
 ) -> Job:
     """Open a job: its record, the opening entry and the terms it starts with."""
-    number, name = number.strip(), name.strip()
+    number = number.strip()
     _refuse_number(number)
-    if not name:
-        raise Refused("A job needs a name.", do="Write one.", field="name")
+    name = checked_text(name, "name", most=120)
+    place = checked_text(place, "place", most=200, required=False)
     refuse_zone(zone)
     key = uuid.uuid4()
     opened = JobOpened(
-        job=key, number=number, name=name, unit=unit, zone=zone, place=place.strip()
+        job=key, number=number, name=name, unit=unit, zone=zone, place=place
     )
     day = (at or timezone.now()).astimezone(ZoneInfo(zone)).date()
     terms = _first_terms(day, unit, frame.strip(), combined_factor, notice)
@@ -70,9 +70,11 @@ def describe_job(
     *, record: Record, name: str, place: str, by: By, at: datetime | None = None
 ) -> None:
     """Write name and place of the job anew."""
-    if not name.strip():
-        raise Refused("A job needs a name.", do="Write one.", field="name")
-    fact = JobDescribed(job=record.job.key, name=name.strip(), place=place.strip())
+    fact = JobDescribed(
+        job=record.job.key,
+        name=checked_text(name, "name", most=120),
+        place=checked_text(place, "place", most=200, required=False),
+    )
     append(record, fact, by=by, at=at, known=Known.DECIDED)
 
 

@@ -10,6 +10,7 @@ from django.core.validators import validate_email
 from django.db import IntegrityError, transaction
 from django.utils import timezone
 
+from jobs.actions.checked import checked_text
 from jobs.models import Company, CompanyKind, Crew, FirmRole, FirmSpell, User
 from stakes.record import Refused
 
@@ -141,6 +142,7 @@ def _describe(
     if not person.name:
         raise Refused("A person needs a name.", do="Write it.", field="name")
     try:
+        checked_text(person.email, "email", most=254)
         validate_email(person.email)
     except ValidationError as error:
         raise Refused(

@@ -3,10 +3,16 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
+from typing import Annotated
 from uuid import UUID
+
+import msgspec
 
 from geometry.units import Unit
 from stakes.record import Fact, MatterLink, kind
+
+Name = Annotated[str, msgspec.Meta(min_length=1, max_length=120)]
+Place = Annotated[str, msgspec.Meta(max_length=200)]
 
 
 class _OfJob(Fact, frozen=True, kw_only=True):
@@ -21,10 +27,10 @@ class JobOpened(_OfJob, frozen=True, kw_only=True):
     """The firm took the job on. Unit and time zone hold for every later entry."""
 
     number: str
-    name: str
+    name: Name
     unit: Unit
     zone: str
-    place: str = ""
+    place: Place = ""
 
     def sentence(self) -> str:
         return f"Job {self.number}, {self.name}, was opened."
@@ -34,8 +40,8 @@ class JobOpened(_OfJob, frozen=True, kw_only=True):
 class JobDescribed(_OfJob, frozen=True, kw_only=True):
     """Name or place of the job were written anew."""
 
-    name: str
-    place: str = ""
+    name: Name
+    place: Place = ""
 
     def sentence(self) -> str:
         where = f", {self.place}" if self.place else ""

@@ -13,6 +13,8 @@ from jobs.rights import Role
 from stakes.can import Can
 from stakes.record import Fact, MatterLink, kind
 
+Name = Annotated[str, msgspec.Meta(min_length=1, max_length=120)]
+Work = Annotated[str, msgspec.Meta(max_length=200)]
 Moment = Annotated[datetime, msgspec.Meta(tz=True)]
 
 
@@ -23,12 +25,12 @@ class SeatGiven(Fact, frozen=True, kw_only=True):
 
     seat: UUID
     person: UUID
-    name: str
+    name: Name
     company: UUID
-    company_name: str
+    company_name: Name
     roles: tuple[Role, ...]
     grants: tuple[Can, ...] = ()
-    work: str = ""
+    work: Work = ""
     since: Moment | None = None
     until: Moment | None = None
 
@@ -48,7 +50,7 @@ class SeatEnded(Fact, frozen=True, kw_only=True):
 
     seat: UUID
     person: UUID
-    name: str
+    name: Name
     until: Moment | None = None
     why: str = ""
 
