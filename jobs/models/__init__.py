@@ -6,6 +6,7 @@ from jobs.models.job import Job, Term
 from jobs.models.people import Company, CompanyKind, Crew, FirmRole, FirmSpell, User
 from jobs.models.seats import Seat
 from jobs.models.sign_in import Outcome, SignInAttempt, Token
+from jobs.models.work import Position, Work
 
 __all__ = [
     "Company",
@@ -15,9 +16,11 @@ __all__ = [
     "FirmSpell",
     "Job",
     "Outcome",
+    "Position",
     "Seat",
     "SignInAttempt",
     "Term",
     "Token",
     "User",
+    "Work",
 ]
