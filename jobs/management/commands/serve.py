@@ -13,6 +13,7 @@ import waitress
 from django.conf import settings
 from django.core.management import call_command
 from django.core.management.base import BaseCommand, CommandParser
+from django.core.wsgi import get_wsgi_application
 
 
 class Command(BaseCommand):
@@ -45,11 +46,14 @@ class Command(BaseCommand):
                 keeper.join()
 
     def _serve(self, host: str, port: int, threads: int) -> None:
-        from jobs.config.wsgi import application
-
         self.stdout.write(f"Lathbook is at http://{host}:{port}/ (stop with Ctrl-C)")
         waitress.serve(
-            application, host=host, port=port, threads=threads, ident="", _quiet=True
+            get_wsgi_application(),
+            host=host,
+            port=port,
+            threads=threads,
+            ident="",
+            _quiet=True,
         )
 
 
