@@ -7,7 +7,12 @@ from typing import Any
 
 from django import forms
 from django.contrib import messages
-from django.http import HttpRequest, HttpResponse, HttpResponseRedirect
+from django.http import (
+    HttpRequest,
+    HttpResponse,
+    HttpResponseRedirect,
+    QueryDict,
+)
 from django.shortcuts import render
 
 from jobs.forms.refusals import show
@@ -18,6 +23,11 @@ class SeeOther(HttpResponseRedirect):
     """Done: look at the page that shows it (303, so that it is fetched, not sent)."""
 
     status_code = 303
+
+
+def sent(request: HttpRequest) -> QueryDict | None:
+    """What was sent, for a form; an empty form that was sent is still one."""
+    return request.POST if request.method == "POST" else None
 
 
 def answer(

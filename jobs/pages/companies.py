@@ -14,7 +14,7 @@ from jobs.actions.people import add_company, change_company, disband_crew, keep_
 from jobs.declared import Who, open_to
 from jobs.forms.people import CompanyForm, CrewForm, NewCompanyForm
 from jobs.models import Company, Crew
-from jobs.pages.answer import answer, do
+from jobs.pages.answer import answer, do, sent
 
 
 @open_to(Who.OFFICE)
@@ -27,7 +27,7 @@ def companies(request: HttpRequest) -> HttpResponse:
 
 @open_to(Who.MANAGER)
 def company_add(request: HttpRequest) -> HttpResponse:
-    form = NewCompanyForm(request.POST or None)
+    form = NewCompanyForm(sent(request))
     return answer(
         request,
         form,
@@ -42,9 +42,7 @@ def company_add(request: HttpRequest) -> HttpResponse:
 @open_to(Who.MANAGER)
 def company_change(request: HttpRequest, company: UUID) -> HttpResponse:
     one = get_object_or_404(Company, pk=company)
-    form = CompanyForm(
-        request.POST or None, initial={"name": one.name, "phone": one.phone}
-    )
+    form = CompanyForm(sent(request), initial={"name": one.name, "phone": one.phone})
     return answer(
         request,
         form,
@@ -66,7 +64,7 @@ def crews(request: HttpRequest) -> HttpResponse:
 
 @open_to(Who.MANAGER)
 def crew_add(request: HttpRequest) -> HttpResponse:
-    return _crew(request, CrewForm(request.POST or None), None, "Put a crew together")
+    return _crew(request, CrewForm(sent(request)), None, "Put a crew together")
 
 
 @open_to(Who.MANAGER)
@@ -78,7 +76,7 @@ def crew_change(request: HttpRequest, crew: UUID) -> HttpResponse:
         "members": [member.pk for member in one.members.all()],
         "skills": ", ".join(one.skills),
     }
-    form = CrewForm(request.POST or None, initial=started, crew=one)
+    form = CrewForm(sent(request), initial=started, crew=one)
     return _crew(request, form, one, f"Change {one.name}")
 
 

@@ -13,7 +13,7 @@ from jobs.declared import Who, open_to
 from jobs.forms.jobs import DescribeJobForm, OpenJobForm, WhyForm
 from jobs.kinds.terms import NoticeRule
 from jobs.models import Job
-from jobs.pages.answer import answer
+from jobs.pages.answer import answer, sent
 from jobs.queries.jobs import jobs_of
 from jobs.queries.seats import by_of
 from stakes.can import Can, needs
@@ -29,7 +29,7 @@ def jobs(request: HttpRequest) -> HttpResponse:
 def job_open(request: HttpRequest) -> HttpResponse:
     last = Record.objects.order_by("-pk").first()
     form = OpenJobForm(
-        request.POST or None,
+        sent(request),
         initial={
             "zone": last.zone if last else "",
             "unit": last.unit if last else "",
@@ -69,7 +69,7 @@ def home(request: HttpRequest, job: str) -> HttpResponse:
 def describe(request: HttpRequest, job: str) -> HttpResponse:
     record = request.asked.record
     form = DescribeJobForm(
-        request.POST or None,
+        sent(request),
         initial={"name": record.job.name, "place": record.job.place},
     )
     return answer(
@@ -85,7 +85,7 @@ def describe(request: HttpRequest, job: str) -> HttpResponse:
 
 @needs(Can.TERMS)
 def close(request: HttpRequest, job: str) -> HttpResponse:
-    form = WhyForm(request.POST or None)
+    form = WhyForm(sent(request))
     return answer(
         request,
         form,
@@ -102,7 +102,7 @@ def close(request: HttpRequest, job: str) -> HttpResponse:
 
 @needs(Can.TERMS)
 def reopen(request: HttpRequest, job: str) -> HttpResponse:
-    form = WhyForm(request.POST or None)
+    form = WhyForm(sent(request))
     return answer(
         request,
         form,

@@ -19,7 +19,7 @@ from jobs.actions.people import (
 from jobs.declared import Who, open_to
 from jobs.forms.people import NewPersonForm, PersonForm
 from jobs.models import Seat, User
-from jobs.pages.answer import answer, do
+from jobs.pages.answer import answer, do, sent
 
 SHOWN = ("name", "email", "firm_role", "initials", "licence_number", "phone")
 
@@ -34,7 +34,7 @@ def people(request: HttpRequest) -> HttpResponse:
 
 @open_to(Who.MANAGER)
 def person_add(request: HttpRequest) -> HttpResponse:
-    form = NewPersonForm(request.POST or None)
+    form = NewPersonForm(sent(request))
     added: list[User] = []
     return answer(
         request,
@@ -57,9 +57,7 @@ def person(request: HttpRequest, person: UUID) -> HttpResponse:
 @open_to(Who.MANAGER)
 def person_change(request: HttpRequest, person: UUID) -> HttpResponse:
     somebody = get_object_or_404(User, pk=person)
-    form = PersonForm(
-        request.POST or None, initial={f: getattr(somebody, f) for f in SHOWN}
-    )
+    form = PersonForm(sent(request), initial={f: getattr(somebody, f) for f in SHOWN})
     return answer(
         request,
         form,

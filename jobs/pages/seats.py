@@ -13,7 +13,7 @@ from jobs.actions.seats import end_seat, give_seat
 from jobs.forms.jobs import WhyForm
 from jobs.forms.seats import GiveSeatForm
 from jobs.models import Seat
-from jobs.pages.answer import answer
+from jobs.pages.answer import answer, sent
 from jobs.queries.companies import seats_seen
 from jobs.queries.seats import office
 from jobs.rights import Role
@@ -36,7 +36,7 @@ def seats(request: HttpRequest, job: str) -> HttpResponse:
 @needs(Can.SEATS)
 def seat_give(request: HttpRequest, job: str) -> HttpResponse:
     asked = request.asked
-    form = GiveSeatForm(request.POST or None, zone=asked.record.time_zone)
+    form = GiveSeatForm(sent(request), zone=asked.record.time_zone)
 
     def act() -> None:
         said = dict(form.cleaned_data)
@@ -60,7 +60,7 @@ def seat_give(request: HttpRequest, job: str) -> HttpResponse:
 def seat_end(request: HttpRequest, job: str, seat: UUID) -> HttpResponse:
     asked = request.asked
     one = get_object_or_404(Seat, record=asked.record, key=seat)
-    form = WhyForm(request.POST or None)
+    form = WhyForm(sent(request))
     return answer(
         request,
         form,

@@ -29,7 +29,7 @@ from jobs.forms.sign_in import (
     TokenForm,
 )
 from jobs.models import Token, User
-from jobs.pages.answer import SeeOther, answer, do
+from jobs.pages.answer import SeeOther, answer, do, sent
 from stakes.record import Refused
 
 
@@ -37,9 +37,7 @@ from stakes.record import Refused
 @never_cache
 @sensitive_post_parameters("password")
 def sign_in(request: HttpRequest) -> HttpResponse:
-    form = SignInForm(
-        request.POST or None, initial={"next": request.GET.get("next", "")}
-    )
+    form = SignInForm(sent(request), initial={"next": request.GET.get("next", "")})
 
     def act() -> None:
         said = form.cleaned_data
@@ -74,7 +72,7 @@ def set_own_password(request: HttpRequest, person: UUID, proof: str) -> HttpResp
     somebody = User.objects.filter(pk=person, is_active=True).first()
     if somebody is None or not default_token_generator.check_token(somebody, proof):
         return render(request, "jobs/link_over.html", status=410)
-    form = NewPasswordForm(request.POST or None)
+    form = NewPasswordForm(sent(request))
     return answer(
         request,
         form,
@@ -94,7 +92,7 @@ def account(request: HttpRequest) -> HttpResponse:
 @open_to(Who.SIGNED_IN)
 @sensitive_post_parameters("current", "password", "again")
 def change_password(request: HttpRequest) -> HttpResponse:
-    form = ChangePasswordForm(request.POST or None)
+    form = ChangePasswordForm(sent(request))
 
     def act() -> None:
         said = form.cleaned_data

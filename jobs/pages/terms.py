@@ -25,7 +25,7 @@ from jobs.forms.terms import (
     UnitAndZoneForm,
     from_payers,
 )
-from jobs.pages.answer import answer
+from jobs.pages.answer import answer, sent
 from jobs.queries.companies import companies_seen
 from jobs.queries.seats import companies_of
 from jobs.queries.terms import settings_seen, terms_at, today
@@ -53,7 +53,7 @@ def terms(request: HttpRequest, job: str) -> HttpResponse:
 def unit_set(request: HttpRequest, job: str) -> HttpResponse:
     record = request.asked.record
     form = UnitAndZoneForm(
-        request.POST or None,
+        sent(request),
         initial=_from_now(record, unit=record.unit, zone=record.zone),
     )
 
@@ -70,7 +70,7 @@ def frame_set(request: HttpRequest, job: str) -> HttpResponse:
     record = request.asked.record
     now = terms_at(record, today(record)).frame
     form = FrameForm(
-        request.POST or None,
+        sent(request),
         initial=_from_now(
             record,
             frame=now.frame if now else "",
@@ -90,7 +90,7 @@ def notice_set(request: HttpRequest, job: str) -> HttpResponse:
     now = terms_at(record, today(record)).notice
     started = from_rule(now.rule if now else None)
     form = NoticeForm(
-        request.POST or None,
+        sent(request),
         initial=_from_now(record, **started, source=now.source if now else ""),
     )
 
@@ -111,7 +111,7 @@ def restake_set(request: HttpRequest, job: str) -> HttpResponse:
     record = request.asked.record
     now = terms_at(record, today(record)).restake
     form = RestakeForm(
-        request.POST or None,
+        sent(request),
         initial=_from_now(record, **from_payers(now.payers if now else ())),
         companies=companies_of(record),
     )
@@ -140,9 +140,7 @@ def hold_time_set(request: HttpRequest, job: str) -> HttpResponse:
     record = request.asked.record
     now = terms_at(record, today(record)).hold_time
     minutes = int(now.total_seconds()) // 60
-    form = HoldTimeForm(
-        request.POST or None, initial=_from_now(record, minutes=minutes)
-    )
+    form = HoldTimeForm(sent(request), initial=_from_now(record, minutes=minutes))
 
     def act() -> None:
         set_hold_time(record=record, by=request.asked.by, **form.cleaned_data)

@@ -11,7 +11,7 @@ from django.urls import reverse
 from jobs.actions.terms import set_tolerance_classes
 from jobs.forms.terms import TermForm, ToleranceForm, from_class
 from jobs.kinds.terms import ToleranceClass
-from jobs.pages.answer import answer
+from jobs.pages.answer import answer, sent
 from jobs.queries.terms import terms_at, today
 from stakes.can import Can, needs
 
@@ -22,7 +22,7 @@ SAID = "Set. It stands in the record with the day it counts from."
 def tolerance_add(request: HttpRequest, job: str) -> HttpResponse:
     record = request.asked.record
     form = ToleranceForm(
-        request.POST or None,
+        sent(request),
         initial={"effective": today(record), "grade": 1, "rule": "simple acceptance"},
         unit=record.length_unit,
     )
@@ -38,7 +38,7 @@ def tolerance_change(request: HttpRequest, job: str, tolerance: UUID) -> HttpRes
     record = request.asked.record
     one = _one(request, tolerance)
     form = ToleranceForm(
-        request.POST or None,
+        sent(request),
         initial={"effective": today(record), **from_class(one)},
         unit=record.length_unit,
     )
@@ -53,9 +53,7 @@ def tolerance_change(request: HttpRequest, job: str, tolerance: UUID) -> HttpRes
 @needs(Can.PLAN)
 def tolerance_remove(request: HttpRequest, job: str, tolerance: UUID) -> HttpResponse:
     one = _one(request, tolerance)
-    form = TermForm(
-        request.POST or None, initial={"effective": today(request.asked.record)}
-    )
+    form = TermForm(sent(request), initial={"effective": today(request.asked.record)})
 
     def changed() -> tuple[ToleranceClass, ...]:
         return tuple(c for c in _classes(request) if c.key != tolerance)
