@@ -2,6 +2,6 @@
 
 from __future__ import annotations
 
-from jobs.folds import jobs, seats, terms
+from jobs.folds import days, jobs, seats, terms
 
-__all__ = ["jobs", "seats", "terms"]
+__all__ = ["days", "jobs", "seats", "terms"]

@@ -2,6 +2,6 @@
 
 from __future__ import annotations
 
-from jobs.kinds import opening, seats, terms
+from jobs.kinds import handovers, holds, opening, requests, seats, terms, visits
 
-__all__ = ["opening", "seats", "terms"]
+__all__ = ["handovers", "holds", "opening", "requests", "seats", "terms", "visits"]

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from jobs.models.days import Handover, Hold, Request, Visit
 from jobs.models.job import Job, Term
 from jobs.models.people import Company, CompanyKind, Crew, FirmRole, FirmSpell, User
 from jobs.models.seats import Seat
@@ -14,13 +15,17 @@ __all__ = [
     "Crew",
     "FirmRole",
     "FirmSpell",
+    "Handover",
+    "Hold",
     "Job",
     "Outcome",
     "Position",
+    "Request",
     "Seat",
     "SignInAttempt",
     "Term",
     "Token",
     "User",
+    "Visit",
     "Work",
 ]

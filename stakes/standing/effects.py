@@ -68,13 +68,20 @@ def answered(components: str) -> str:
     return f"answer;{components}"
 
 
+def hold_sent(hold: UUID) -> str:
+    """A hold covers the mark; several may at once."""
+    return f"hold;{hold}"
+
+
+def hold_lifted(hold: UUID) -> str:
+    return f"lift;{hold}"
+
+
 RETIRED = "retire"
 SUPERSEDED = "supersede"
 ACCEPTED = "accept"
 HANDED_OVER = "hand"
 BUILT_FROM = "built"
-HELD = "hold"
-HOLD_LIFTED = "lift"
 PULLED = "pulled"
 
 

@@ -125,8 +125,13 @@ class MarkState:
 
     planned_at: datetime | None = None
     retired_at: datetime | None = None
-    held: bool = False
+    holds: set[str] = field(default_factory=set)
     stakes: list[StakeState] = field(default_factory=list)
+
+    @property
+    def held(self) -> bool:
+        """A hold is out on it."""
+        return bool(self.holds)
 
     @property
     def stake(self) -> StakeState | None:
@@ -273,11 +278,11 @@ def _built(state: MarkState, at: datetime, number: int, rest: list[str]) -> None
 
 
 def _hold(state: MarkState, at: datetime, number: int, rest: list[str]) -> None:
-    state.held = True
+    state.holds.add(rest[0])
 
 
 def _lift(state: MarkState, at: datetime, number: int, rest: list[str]) -> None:
-    state.held = False
+    state.holds.discard(rest[0])
 
 
 def _pulled(state: MarkState, at: datetime, number: int, rest: list[str]) -> None:
