@@ -23,7 +23,7 @@ How do satellite positions fit the site?
   localised_heights, HeightFit, local_height   the same for heights
 What is seen, and where to set up?
   obstacle, Obstacle, inside_any   what stands in the way
-  clear               whether one line of sight is free
+  clear, clear_lines  whether one line of sight, or each of many, is free
   seen_from, visibility   what is seen from many places
   best_setup, Setups, grid, finer   the best free station over many places
   best_occupied, Occupations   the best mark to occupy and the best backsight
@@ -79,7 +79,7 @@ from geometry.precision.setting_out import (
     setting_out,
     shown_cut_fill,
 )
-from geometry.precision.sight import clear, seen_from, visibility
+from geometry.precision.sight import clear, clear_lines, seen_from, visibility
 
 __all__ = [
     "Combined",
@@ -106,6 +106,7 @@ __all__ = [
     "best_occupied",
     "best_setup",
     "clear",
+    "clear_lines",
     "combined_height",
     "curvature_refraction",
     "cut_fill",

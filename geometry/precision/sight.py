@@ -47,6 +47,39 @@ def clear(
     )
 
 
+def clear_lines(
+    starts: ArrayLike,
+    ends: ArrayLike,
+    things: Sequence[Obstacle],
+    *,
+    start_elevations_m: ArrayLike | None = None,
+    end_elevations_m: ArrayLike | None = None,
+) -> Flags:
+    """`clear` for a list of lines, `starts` and `ends` (n, 2); bool (n,).
+
+    Elevations (n,), not-a-number where unknown. A tree of the outlines finds the few
+    pairs that meet; only those are tested by their edges.
+    """
+    a, b = checked.points("starts", starts), checked.points("ends", ends)
+    if len(a) != len(b):
+        raise WrongShape("Starts and ends must be equally many.")
+    free = np.ones(len(a), dtype=bool)
+    if not len(a) or not things:
+        return free
+    up = np.full(len(a), np.nan) if start_elevations_m is None else start_elevations_m
+    at = np.full(len(a), np.nan) if end_elevations_m is None else end_elevations_m
+    heights = [
+        [None if math.isnan(h) else float(h) for h in np.asarray(side, dtype=float)]
+        for side in (up, at)
+    ]
+    tree = shapely.STRtree([shapely.Polygon(thing.outline) for thing in things])
+    lines = shapely.linestrings(np.stack([a, b], axis=1))
+    for i, j in tree.query(lines, predicate="intersects").T:
+        if free[i]:
+            free[i] = not _blocks(things[j], a[i], b[i], heights[0][i], heights[1][i])
+    return free
+
+
 def seen_from(
     places: ArrayLike,
     mark: ArrayLike,
