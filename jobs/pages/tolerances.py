@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import uuid
+from collections.abc import Callable
 from uuid import UUID
 
 from django.http import Http404, HttpRequest, HttpResponse
@@ -47,7 +48,11 @@ def tolerance_change(request: HttpRequest, job: str, tolerance: UUID) -> HttpRes
         anew = form.tolerance(tolerance)
         return tuple(anew if c.key == tolerance else c for c in _classes(request))
 
-    return _set(request, form, changed, f"Tolerance class {one.name}", "Set it")
+    ids = {"job": job, "tolerance": tolerance}
+    out = (reverse("jobs:tolerance-remove", kwargs=ids), "Take this class out")
+    return _set(
+        request, form, changed, f"Tolerance class {one.name}", "Set it", other=out
+    )
 
 
 @needs(Can.PLAN)
@@ -74,7 +79,12 @@ def _one(request: HttpRequest, key: UUID) -> ToleranceClass:
 
 
 def _set(
-    request: HttpRequest, form: TermForm, changed: object, title: str, verb: str
+    request: HttpRequest,
+    form: TermForm,
+    changed: Callable[[], tuple[ToleranceClass, ...]],
+    title: str,
+    verb: str,
+    **more: object,
 ) -> HttpResponse:
     asked = request.asked
 
@@ -94,4 +104,5 @@ def _set(
         said=SAID,
         title=title,
         verb=verb,
+        **more,
     )
