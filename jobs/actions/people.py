@@ -153,15 +153,17 @@ def _describe(
 
 
 def _save_person(person: User) -> None:
-    taken = User.objects.filter(email=person.email).exclude(pk=person.pk)
-    if taken.exists():
+    # The unique column decides: between a look and a save another may take it.
+    try:
+        with transaction.atomic():
+            person.save()
+    except IntegrityError as error:
         raise Refused(
             f"{person.email} belongs to another person.",
             do="Every person signs in by an address of their own.",
             field="email",
             code="taken",
-        )
-    person.save()
+        ) from error
 
 
 def _refuse_firm_role(company: Company, firm_role: FirmRole) -> None:
