@@ -18,7 +18,7 @@ from jobs.actions.people import (
 )
 from jobs.declared import Who, open_to
 from jobs.forms.people import NewPersonForm, PersonForm
-from jobs.models import Seat, User
+from jobs.models import Seat, SignInAttempt, User
 from jobs.pages.answer import answer, do, sent
 
 SHOWN = ("name", "email", "firm_role", "initials", "licence_number", "phone")
@@ -110,5 +110,6 @@ def _person(request: HttpRequest, somebody: User, *, link: str = "") -> HttpResp
         "seats": seats.order_by("-since"),
         "spells": somebody.spells.order_by("-since"),
         "link": link,
+        "attempts": SignInAttempt.objects.filter(email=somebody.email)[:10],
     }
     return render(request, "jobs/person.html", context)
