@@ -94,6 +94,8 @@ def test_being_told_to_wait_does_not_make_the_wait_longer(crew: User) -> None:
         wrong(crew, minutes=n)
     for n in range(20):
         assert wrong(crew, minutes=6 + n / 10) == "too many"
+    noted = SignInAttempt.objects.filter(outcome=Outcome.TOO_MANY)
+    assert noted.count() == 2, "once a minute is enough"
 
     assert attempt(crew, PASSWORD, minutes=15) == crew
 

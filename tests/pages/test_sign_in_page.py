@@ -202,3 +202,12 @@ def test_a_fragment_is_not_filled_with_the_sign_in_page(
     answer = client.get("/jobs/2614/", headers={"HX-Request": "true"})
 
     assert answer.headers["HX-Redirect"] == "/sign-in/"
+
+
+def test_a_form_that_cannot_prove_its_page_is_told_what_to_do(crew: User) -> None:
+    client = Client(enforce_csrf_checks=True)
+    answer = sign_in(client, crew)
+
+    assert answer.status_code == 403
+    assert "load the page again" in answer.content.decode()
+    assert not SignInAttempt.objects.exists()
