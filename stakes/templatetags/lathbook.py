@@ -8,6 +8,7 @@ from django import template
 from django.utils.html import format_html
 from django.utils.safestring import SafeString
 
+from geometry.units import Unit
 from stakes.can import Asked, Can
 from stakes.models import Record
 from stakes.record.lengths import Measured
@@ -58,6 +59,19 @@ def measured(length: Measured | None) -> SafeString | str:
         return "–"
     text = length.text.removesuffix(length.unit).strip()
     return format_html('{}<span class="unit">{}</span>', text, length.unit)
+
+
+_UNITS = {
+    Unit.METRE: "metres",
+    Unit.FOOT: "international feet (0.3048 m)",
+    Unit.US_SURVEY_FOOT: "US survey feet (1200/3937 m)",
+}
+
+
+@register.filter
+def unit_words(unit: Unit) -> str:
+    """The unit of a job, so that nobody mistakes one foot for the other."""
+    return _UNITS[unit]
 
 
 @register.filter
