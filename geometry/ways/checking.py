@@ -65,6 +65,9 @@ def _possible(draft: Draft, scene: Scene) -> tuple[Indices, Flags]:
     if station is not None:
         shot = scene.occupiable & (scene.away <= station.distance_m)
         shot &= scene.away >= 1.5
+    if tape is not None:
+        # Two lengths of tape, where no instrument is at hand.
+        taped = taped | (~shot & (scene.away <= 2 * tape.length_m))
     marks = np.flatnonzero(free & (taped | shot))
     return marks, taped[marks]
 

@@ -40,7 +40,8 @@ def string_crossings(scene: Scene) -> list[Draft]:
     crossings.sort(key=lambda x: (x[0][2] + x[1][2]) / x[2] ** 2)
     good = [c for c in crossings if _usable(scene, c)]
     bad = [c for c in crossings if not _usable(scene, c)]
-    return [_crossing(scene, one[:2], two[:2]) for one, two, _ in good[:MOST] + bad[:1]]
+    most = max(MOST, scene.limits.per_kind)
+    return [_crossing(scene, one[:2], two[:2]) for one, two, _ in good[:most] + bad[:1]]
 
 
 def _reachable(scene: Scene) -> list[int]:

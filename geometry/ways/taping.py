@@ -194,7 +194,8 @@ def _best(scene: Scene, rows: Indices, square: Array) -> list[tuple[int, int]]:
     order = order[np.isfinite(square[order])]
     good = _all(scene.usable[rows])
     open_ = _all(scene.clear[rows]) & _all(scene.trusted[rows])
-    picked = order[good[order] & open_[order]][:MOST].tolist()
+    most = max(MOST, scene.limits.per_kind)
+    picked = order[good[order] & open_[order]][:most].tolist()
     picked += order[good[order] & ~open_[order]][:2].tolist()
     picked += order[~good[order]][:1].tolist()
     return [(int(rows[i][0]), int(rows[i][1])) for i in picked]
