@@ -21,6 +21,7 @@ from jobs.kinds.terms import (
 )
 from jobs.models import Company
 from jobs.notice import NeverWorks, counts_as_received
+from jobs.queries.terms import terms_at
 from stakes.models import EntryMark, Record
 from stakes.record import By, Known, Refused, Said, append, held
 
@@ -129,6 +130,45 @@ def set_tolerance_classes(
         term=uuid.uuid4(), effective=effective, classes=tuple(classes)
     )
     append(record, fact, by=by, at=at, known=Known.DECIDED)
+
+
+def keep_tolerance_class(
+    *,
+    record: Record,
+    tolerance: ToleranceClass,
+    effective: date,
+    by: By,
+    at: datetime | None = None,
+) -> None:
+    """Add a class, or write the one with its key anew; the others stay as they stand."""
+    with held(record) as locked:
+        classes = list(terms_at(locked, effective).classes)
+        places = [n for n, c in enumerate(classes) if c.key == tolerance.key]
+        where = places[0] if places else len(classes)
+        classes[where : where + 1] = [tolerance]
+        set_tolerance_classes(
+            record=locked, classes=classes, effective=effective, by=by, at=at
+        )
+
+
+def take_out_tolerance_class(
+    *,
+    record: Record,
+    key: uuid.UUID,
+    effective: date,
+    by: By,
+    at: datetime | None = None,
+) -> None:
+    """Take a class out. Marks that name it keep its name and are held to nothing."""
+    with held(record) as locked:
+        standing = terms_at(locked, effective).classes
+        set_tolerance_classes(
+            record=locked,
+            classes=[c for c in standing if c.key != key],
+            effective=effective,
+            by=by,
+            at=at,
+        )
 
 
 def set_restake_terms(

@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 import uuid
-from collections.abc import Callable
 from uuid import UUID
 
 from django.http import Http404, HttpRequest, HttpResponse
 from django.urls import reverse
 
-from jobs.actions.terms import set_tolerance_classes
+from geometry.decide import Rule
+from jobs.actions.terms import keep_tolerance_class, take_out_tolerance_class
 from jobs.forms.terms import TermForm, ToleranceForm, from_class
 from jobs.kinds.terms import ToleranceClass
 from jobs.pages.answer import answer, sent
@@ -21,88 +21,79 @@ SAID = "Set. It stands in the record with the day it counts from."
 
 @needs(Can.PLAN)
 def tolerance_add(request: HttpRequest, job: str) -> HttpResponse:
-    record = request.asked.record
     form = ToleranceForm(
         sent(request),
-        initial={"effective": today(record), "grade": 1, "rule": "simple acceptance"},
-        unit=record.length_unit,
+        initial={"grade": 1, "rule": Rule.SIMPLE, **_from_today(request)},
+        unit=request.asked.record.length_unit,
     )
-
-    def changed() -> tuple[ToleranceClass, ...]:
-        return (*_classes(request), form.tolerance(uuid.uuid4()))
-
-    return _set(request, form, changed, "Add a tolerance class", "Add")
+    return _keep(request, form, uuid.uuid4(), title="Add a tolerance class", verb="Add")
 
 
 @needs(Can.PLAN)
 def tolerance_change(request: HttpRequest, job: str, tolerance: UUID) -> HttpResponse:
-    record = request.asked.record
     one = _one(request, tolerance)
     form = ToleranceForm(
         sent(request),
-        initial={"effective": today(record), **from_class(one)},
-        unit=record.length_unit,
+        initial={**from_class(one), **_from_today(request)},
+        unit=request.asked.record.length_unit,
     )
-
-    def changed() -> tuple[ToleranceClass, ...]:
-        anew = form.tolerance(tolerance)
-        return tuple(anew if c.key == tolerance else c for c in _classes(request))
-
     ids = {"job": job, "tolerance": tolerance}
     out = (reverse("jobs:tolerance-remove", kwargs=ids), "Take this class out")
-    return _set(
-        request, form, changed, f"Tolerance class {one.name}", "Set it", other=out
-    )
+    title = f"Tolerance class {one.name}"
+    return _keep(request, form, tolerance, title=title, verb="Set it", other=out)
 
 
 @needs(Can.PLAN)
 def tolerance_remove(request: HttpRequest, job: str, tolerance: UUID) -> HttpResponse:
     one = _one(request, tolerance)
-    form = TermForm(sent(request), initial={"effective": today(request.asked.record)})
+    form = TermForm(sent(request), initial=_from_today(request))
+    return answer(
+        request,
+        form,
+        lambda: take_out_tolerance_class(
+            record=request.asked.record,
+            key=tolerance,
+            by=request.asked.by,
+            **form.cleaned_data,
+        ),
+        to=_terms(job),
+        said=SAID,
+        title=f"Take out {one.name}",
+        verb="Take it out",
+    )
 
-    def changed() -> tuple[ToleranceClass, ...]:
-        return tuple(c for c in _classes(request) if c.key != tolerance)
 
-    return _set(request, form, changed, f"Take out {one.name}", "Take it out")
-
-
-def _classes(request: HttpRequest) -> tuple[ToleranceClass, ...]:
-    record = request.asked.record
-    return terms_at(record, today(record)).classes
+def _keep(
+    request: HttpRequest, form: ToleranceForm, key: UUID, **more: object
+) -> HttpResponse:
+    asked = request.asked
+    return answer(
+        request,
+        form,
+        lambda: keep_tolerance_class(
+            record=asked.record,
+            tolerance=form.tolerance(key),
+            effective=form.cleaned_data["effective"],
+            by=asked.by,
+        ),
+        to=_terms(asked.record.number),
+        said=SAID,
+        **more,
+    )
 
 
 def _one(request: HttpRequest, key: UUID) -> ToleranceClass:
-    found = next((c for c in _classes(request) if c.key == key), None)
+    record = request.asked.record
+    standing = terms_at(record, today(record)).classes
+    found = next((c for c in standing if c.key == key), None)
     if found is None:
         raise Http404("There is no such tolerance class on this job.")
     return found
 
 
-def _set(
-    request: HttpRequest,
-    form: TermForm,
-    changed: Callable[[], tuple[ToleranceClass, ...]],
-    title: str,
-    verb: str,
-    **more: object,
-) -> HttpResponse:
-    asked = request.asked
+def _from_today(request: HttpRequest) -> dict[str, object]:
+    return {"effective": today(request.asked.record)}
 
-    def act() -> None:
-        set_tolerance_classes(
-            record=asked.record,
-            classes=changed(),
-            effective=form.cleaned_data["effective"],
-            by=asked.by,
-        )
 
-    return answer(
-        request,
-        form,
-        act,
-        to=reverse("jobs:terms", kwargs={"job": asked.record.number}),
-        said=SAID,
-        title=title,
-        verb=verb,
-        **more,
-    )
+def _terms(job: str) -> str:
+    return reverse("jobs:terms", kwargs={"job": job})
