@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from stakes.kinds import (
+    cautions,
     checking,
     condition,
     control,
@@ -14,6 +15,7 @@ from stakes.kinds import (
 )
 
 __all__ = [
+    "cautions",
     "checking",
     "condition",
     "control",

@@ -8,6 +8,7 @@ from uuid import UUID
 
 import msgspec
 
+from stakes.kinds.photos import photo_links
 from stakes.kinds.words import Component, Reach, Verdict
 from stakes.record.kinds import Fact, MarkLink, MatterLink, kind
 from stakes.record.lengths import Measured
@@ -19,13 +20,17 @@ CheckSort = Literal[
 
 
 class Judgement(msgspec.Struct, frozen=True, kw_only=True):
-    """A verdict with all it was judged by, so that anybody can judge again."""
+    """A verdict with all it was judged by, so that anybody can judge again.
+
+    `uncertainty` is standard (one sigma), for a position the semi-major axis.
+    """
 
     measured: Measured | None = None
     computed: Measured | None = None
     difference: Measured | None = None
     tolerance: Measured | None = None
     uncertainty: Measured | None = None
+    tolerance_class: str = ""
     rule: str = "simple acceptance"
     method: str = "1"
     verdict: Verdict
@@ -39,6 +44,8 @@ class StakeChecked(Fact, kw_only=True):
     `grade` says how independent the check is of the setting (0 same setup, 1 new setup
     on the same control, 2 other control or method, 3 other control and person);
     `reaches` says what it can see. `other` marks were measured to and not judged.
+    `northing`, `easting` are the place measured by a check of position; `against` is
+    the boundary or existing work of a check of fit, with where its number came from.
     """
 
     check: UUID
@@ -51,11 +58,16 @@ class StakeChecked(Fact, kw_only=True):
     judgement: Judgement
     corrections: tuple[str, ...] = ()
     angle: str = ""
+    northing: Measured | None = None
+    easting: Measured | None = None
+    against: str = ""
+    shared: tuple[str, ...] = ()
     grade: int = 0
     reaches: tuple[Reach, ...] = ()
     instrument: str = ""
     remark: str = ""
     occasion: UUID | None = None
+    photos: tuple[str, ...] = ()
 
     def marks(self) -> Iterable[MarkLink]:
         effect = effects.checked(
@@ -76,6 +88,7 @@ class StakeChecked(Fact, kw_only=True):
         yield from (MatterLink("setup", s, effect) for s in self.set_by)
         if self.occasion:
             yield MatterLink("visit", self.occasion)
+        yield from photo_links(self.photos)
 
     def sentence(self) -> str:
         reason = f", {self.judgement.reason}" if self.judgement.reason else ""

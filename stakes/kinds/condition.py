@@ -6,6 +6,7 @@ from collections.abc import Iterable
 from typing import Literal
 from uuid import UUID
 
+from stakes.kinds.photos import photo_links
 from stakes.kinds.words import Component
 from stakes.record.kinds import Fact, MarkLink, MatterLink, kind
 from stakes.record.lengths import Measured
@@ -44,7 +45,9 @@ class MarksSeen(Fact, kw_only=True):
         return [MarkLink(m, "seen", effect) for m in self.listed]
 
     def matters(self) -> Iterable[MatterLink]:
-        return [MatterLink("visit", self.occasion)] if self.occasion else []
+        if self.occasion:
+            yield MatterLink("visit", self.occasion)
+        yield from photo_links(self.photos)
 
     def sentence(self) -> str:
         return f"Seen: {self.condition}{', ' + self.cause if self.cause else ''}."
@@ -78,6 +81,7 @@ class MarksGone(Fact, kw_only=True):
             yield MatterLink("visit", self.occasion)
         if self.ask:
             yield MatterLink("request", self.ask)
+        yield from photo_links(self.photos)
 
     def sentence(self) -> str:
         how = "Destroyed" if self.witnessed else "Found missing"
@@ -109,6 +113,7 @@ class ForeignMarkFound(Fact, kw_only=True):
             yield MatterLink("setup", self.setup)
         if self.occasion:
             yield MatterLink("visit", self.occasion)
+        yield from photo_links(self.photos)
 
     def sentence(self) -> str:
         return f"Foreign mark {self.label} found. {self.words}".strip()

@@ -7,6 +7,7 @@ from uuid import UUID
 
 import msgspec
 
+from stakes.kinds.photos import photo_links
 from stakes.kinds.words import COMPONENTS, Carries, OldStake
 from stakes.record.kinds import Fact, MarkLink, MatterLink, kind
 from stakes.record.lengths import Measured
@@ -57,6 +58,7 @@ class StakeSet(Fact, kw_only=True):
     occasion: UUID | None = None
     ask: UUID | None = None
     method: str = ""
+    photos: tuple[str, ...] = ()
 
     def marks(self) -> Iterable[MarkLink]:
         effect = effects.stake_set(
@@ -77,6 +79,7 @@ class StakeSet(Fact, kw_only=True):
             yield MatterLink("visit", self.occasion)
         if self.ask:
             yield MatterLink("request", self.ask)
+        yield from photo_links(self.photos)
 
     def sentence(self) -> str:
         how = f" by {self.way.method}" if self.way else ""

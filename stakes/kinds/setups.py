@@ -36,7 +36,8 @@ class SetupCheck(msgspec.Struct, frozen=True, kw_only=True):
     """One check of a setup: measured against what the record computes.
 
     `oriented_on` says that the mark is one the setup leans on: such a check cannot
-    prove the mark, and alone it cannot open a setup.
+    prove the mark, and alone it cannot open a setup. `northing` and `easting` are the
+    place measured in a check of position.
     """
 
     mark: UUID
@@ -46,7 +47,10 @@ class SetupCheck(msgspec.Struct, frozen=True, kw_only=True):
     difference: Measured | None = None
     tolerance: Measured | None = None
     uncertainty: Measured | None = None
+    northing: Measured | None = None
+    easting: Measured | None = None
     components: Component = "p"
+    reason: str = ""
     oriented_on: bool = False
     verdict: Verdict
     remark: str = ""
@@ -80,6 +84,8 @@ class SetupOpened(Fact, kw_only=True):
 
     `gates` names what should have held and did not (no check, control not verified);
     what is set from it is then held until the surveyor accepts it or a check clears it.
+    `northing` and `easting` are the place computed for a free station, `elevation` the
+    height of the instrument's line of sight.
     """
 
     setup: UUID
@@ -94,6 +100,9 @@ class SetupOpened(Fact, kw_only=True):
     checks: tuple[SetupCheck, ...] = ()
     residuals: tuple[str, ...] = ()
     fix: str = ""
+    northing: Measured | None = None
+    easting: Measured | None = None
+    elevation: Measured | None = None
     weather: str = ""
     gates: tuple[str, ...] = ()
     authorised_by: str = ""
