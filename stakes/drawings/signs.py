@@ -17,9 +17,10 @@ STANDINGS = ("planned", "standing", "disturbed", "gone", "retired")
 TRUSTS = ("not checked", "checked", "in question", "failed", "superseded")
 CARRIES = ("both", "position", "elevation")
 
-_LEAN_DEGREES = 17
+_LEAN_DEGREES = 12
 _PALE = 0.3
 _GAP = 3.25
+_DOT = 3.6
 _BOX = (-16.0, -16.0, 32.0, 32.0)
 
 
@@ -40,7 +41,7 @@ def sign(purpose: str, standing: str, trust: str, carries: str = "both") -> str:
     if standing == "retired":
         body = _retired(trust)
     elif standing == "gone":
-        body = _body(combo, pale=True) + _over(trust) + _cross()
+        body = _body(combo, pale=True) + _under_cross(trust) + _cross()
     elif standing == "disturbed":
         upright = _body(combo) + _over(trust) + _lath()
         body = tag("g", upright, transform=f"rotate({_LEAN_DEGREES})")
@@ -178,6 +179,16 @@ def _over(trust: str) -> str:
     return ""
 
 
+def _under_cross(trust: str) -> str:
+    """What the cross leaves readable: hatching alone is the question, the bar reaches
+    out on both sides."""
+    if trust == "in question":
+        return ""
+    if trust == "failed":
+        return _with_halo("M-12.5,0H12.5", 2.6, 5)
+    return _over(trust)
+
+
 # Drawn, not set in type: a font that is missing must not change what a sign says.
 _QUESTION = (
     "M-2.7,-2.6C-2.7,-4.3 -1.5,-5.3 0,-5.3C1.6,-5.3 2.8,-4.3 2.8,-2.8"
@@ -205,16 +216,16 @@ def _stroke(line: str, width: float, colour: str, data_paper: str | None = None)
 
 
 def _cross() -> str:
-    return group(_with_halo("M-8,-8L8,8M8,-8L-8,8", 2.6, 4.6), ink="gone")
+    return group(_with_halo("M-8.5,-8.5L8.5,8.5M8.5,-8.5L-8.5,8.5", 2.4, 4), ink="gone")
 
 
 def _lath() -> str:
     """The lath beside its stake, leaning further than the stake does."""
-    return group(_stroke("M4.5,-5.5L9.5,-14", 2.2, "currentColor"), ink="disturbed")
+    return group(_stroke("M6,-4.5L11,-14.5", 2.2, "currentColor"), ink="disturbed")
 
 
 def _retired(trust: str) -> str:
-    dot = tag("circle", r=3.2)
+    dot = tag("circle", r=_DOT)
     if trust == "in question":
         return dot + tag(
             "g", _stroke(_QUESTION, 2, "currentColor"), transform="translate(8.5,0)"
@@ -228,9 +239,19 @@ def _retired(trust: str) -> str:
 
 def _base_line(combo: Combo) -> str:
     """A line under what carries position only, over what carries elevation only."""
-    heights = [y for _, y in OUTLINES[combo.purpose]]
+    if combo.standing == "retired":
+        above, below, half = -_DOT, _DOT, 5
+    else:
+        heights = [y for _, y in OUTLINES[combo.purpose]]
+        above, below, half = min(heights), max(heights), 9
     if combo.carries == "position":
-        return _stroke(f"M-9,{number(max(heights) + _GAP)}H9", 2, "currentColor")
+        return _line(below + _GAP, half)
     if combo.carries == "elevation":
-        return _stroke(f"M-9,{number(min(heights) - _GAP)}H9", 2, "currentColor")
+        return _line(above - _GAP, half)
     return ""
+
+
+def _line(height: float, half: float) -> str:
+    return _stroke(
+        f"M-{number(half)},{number(height)}H{number(half)}", 2, "currentColor"
+    )
