@@ -8,7 +8,7 @@ from django import template
 from django.utils.html import format_html
 from django.utils.safestring import SafeString
 
-from geometry.units import Unit
+from geometry.units import Length, Unit
 from stakes.can import Asked, Can
 from stakes.models import Record
 from stakes.record.lengths import Measured
@@ -60,6 +60,22 @@ def measured(length: Measured | None) -> SafeString | str:
     text = length.text.removesuffix(length.unit).strip()
     return format_html('{}<span class="unit">{}</span>', text, length.unit)
 
+
+@register.filter
+def from_nm(nanometres: str, record: Record) -> SafeString | str:
+    """Exact nanometres in the job's unit: 0.01 ft or 1 mm, the unit beside it."""
+    if not nanometres:
+        return "not recorded"
+    unit = record.length_unit
+    decimals = 3 if unit is Unit.METRE else 2
+    length = Length.from_nanometres(int(nanometres), unit, decimals)
+    text = length.shown(unit, decimals)
+    return format_html(
+        '{}<span class="unit">{}</span>', text, _SHORT.get(str(unit), str(unit))
+    )
+
+
+_SHORT = {"ftUS": "ft (US)"}
 
 _UNITS = {
     Unit.METRE: "metres",

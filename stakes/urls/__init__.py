@@ -4,5 +4,7 @@ from __future__ import annotations
 
 from django.urls import URLPattern, URLResolver
 
+from stakes.urls import job
+
 app_name = "stakes"
-urlpatterns: list[URLPattern | URLResolver] = []
+urlpatterns: list[URLPattern | URLResolver] = [*job.urlpatterns]

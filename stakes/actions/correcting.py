@@ -1,0 +1,87 @@
+"""Correcting the record: take an entry back, or say it again rightly. Never erase."""
+
+from __future__ import annotations
+
+from datetime import datetime
+from typing import Any
+
+from stakes.kinds.correcting import Withdrawn
+from stakes.models import Entry, Record
+from stakes.record import By, Fact, Known, Refused, Said, append, held
+from stakes.record.kinds import fact_from, facts_as_data
+from stakes.record.reading import corrections, decoded
+
+LEFT_TO_THEIR_OWN_PAGES = ("job opened", "seat given", "seat ended")
+"""Kinds whose undoing is an act of its own, with rules of its own."""
+
+
+def withdraw(record: Record, number: int, *, why: str, by: By) -> Entry:
+    """Take back what an entry said; it stays readable, and why stands beside it."""
+    with held(record) as locked:
+        target = _target(locked, number)
+        said = Said(
+            fact=Withdrawn(),
+            known=Known.DECIDED,
+            corrects=target.key,
+            withdraws=True,
+            why=why.strip(),
+        )
+        return append(locked, said, by=by)[0]
+
+
+def correct(
+    record: Record,
+    number: int,
+    *,
+    changes: dict[str, Any],
+    why: str,
+    by: By,
+    at: datetime | None = None,
+) -> Entry:
+    """Say an entry again with some facts changed; all its facts are replaced.
+
+    `changes` are plain data by fact name; `at` is the right time, None to keep it.
+    """
+    with held(record) as locked:
+        target = _target(locked, number)
+        before = decoded(target, {}).fact
+        after = fact_from(target.kind, {**_data(before), **changes})
+        if after == before and at in (None, target.happened_at):
+            raise Refused(
+                "Nothing was changed.",
+                do="Change a fact or the time, or go back.",
+                code="no change",
+            )
+        said = Said(
+            fact=after,
+            at=at or target.happened_at,
+            known=Known(target.known),
+            corrects=target.key,
+            counter=target.counter,
+            why=why.strip(),
+        )
+        return append(locked, said, by=by)[0]
+
+
+def _data(fact: Fact) -> dict[str, Any]:
+    return facts_as_data(fact)
+
+
+def _target(record: Record, number: int) -> Entry:
+    target = Entry.objects.filter(record=record, number=number).first()
+    if target is None:
+        raise Refused(f"There is no entry {number} in this record.", code="no target")
+    if target.kind in LEFT_TO_THEIR_OWN_PAGES:
+        raise Refused(
+            f"An entry of the kind {target.kind!r} is not corrected here.",
+            do="Use the page it was made on.",
+            code="other page",
+        )
+    newer = corrections(record).get(number)
+    if newer is not None:
+        raise Refused(
+            f"Entry {number} no longer counts: entry {newer} took its place.",
+            do=f"Correct entry {newer}.",
+            code="already corrected",
+        )
+    return target

@@ -1,0 +1,1 @@
+"""Pages that read a job: plan, marks, one mark, the record, one entry."""
