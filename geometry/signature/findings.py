@@ -62,8 +62,8 @@ class Signature:
     `causes` are those that cannot be told apart, most probable first; one with fail,
     none with pass. `weighed` are all causes that could be tried. `wild` are rows of
     shots that the best explanation leaves out, `redundancy` the degrees of freedom
-    it has left. `would_see_m` is the smallest effect at a shot that these shots
-    would show with a probability of 80 %, of the causes with one parameter.
+    it has left. `would_see_m`, with pass, is the smallest effect at a shot that these
+    shots would show with a probability of 80 %, for the worst one-parameter cause.
     """
 
     verdict: Verdict

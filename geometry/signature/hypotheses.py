@@ -12,7 +12,7 @@ from geometry.signature.kinds import Kind
 from geometry.signature.setups import Setup, rays
 
 Field = Callable[[Array], Array]
-"""Points (n, 2) to displacements: (n, 2) when fixed, (n, 2, k) per parameter."""
+"""Points (n, 2) to displacements: (n, rows) when fixed, (n, rows, k) per parameter."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -24,7 +24,7 @@ class Hypothesis:
     A parameter beyond its limit (1 per parameter, none: no limit) makes the cause
     another one. `base` is what the fixed field already holds of each parameter.
     `setup` and `mark` are places in the lists the caller gave. `about` says which
-    known field.
+    known field. `rows` is 2 for displacements, 1 for heights.
     """
 
     kind: Kind
@@ -37,15 +37,18 @@ class Hypothesis:
     setup: int | None = None
     mark: int | None = None
     about: str = ""
+    rows: int = 2
 
     def fixed_at(self, points: Array) -> Array:
-        """Displacements (n, 2) at points (n, 2), metres."""
-        return np.zeros_like(points) if self.fixed is None else self.fixed(points)
+        """Displacements (n, rows) at points (n, 2), metres."""
+        if self.fixed is None:
+            return np.zeros((len(points), self.rows))
+        return self.fixed(points)
 
     def free_at(self, points: Array) -> Array:
-        """Displacement per unit of each parameter, (n, 2, k)."""
+        """Displacement per unit of each parameter, (n, rows, k)."""
         if self.free is None:
-            return np.zeros((*points.shape, 0))
+            return np.zeros((len(points), self.rows, 0))
         return self.free(points)
 
 

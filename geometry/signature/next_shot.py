@@ -8,14 +8,14 @@ predictions).
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 
 import numpy as np
 
 from geometry.checked import Array
 from geometry.signature.findings import NextShot
 from geometry.signature.hypotheses import Hypothesis
-from geometry.signature.setups import Setup, noise
+from geometry.signature.setups import Setup
 from geometry.signature.weigh import Fit
 from geometry.signature.words import Words, towards
 
@@ -31,20 +31,21 @@ def next_shot(
     candidates: Array,
     setups: Sequence[Setup],
     plan: Array,
-    *,
-    point_m: float,
+    noise: Callable[[Array], Array],
     words: Words,
 ) -> NextShot:
-    """The best of the candidates (c, 2), or of a ring of spots when there are none."""
+    """The best of the candidates (c, 2), or of a ring of spots when there are none.
+
+    `noise` gives a shot's covariance (c, q, q) at the spots.
+    """
     given = len(candidates) > 0
     spots = candidates if given else _ring(setups, plan)
     differ = _predicted(first, spots) - _predicted(second, spots)
-    spread = noise(tuple(setups), spots, point_m)
-    spread = spread + _doubt(first, spots) + _doubt(second, spots)
+    spread = noise(spots) + _doubt(first, spots) + _doubt(second, spots)
     seen = np.linalg.solve(spread, differ[:, :, None])[:, :, 0]
     times = np.sqrt(np.maximum((differ * seen).sum(axis=1), 0.0))
     best = int(np.argmax(times))
-    gap = float(np.hypot(*differ[best]))
+    gap = float(np.linalg.norm(differ[best]))
     decides = bool(times[best] >= DECIDES)
     return NextShot(
         point=spots[best],
