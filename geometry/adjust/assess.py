@@ -19,7 +19,7 @@ from geometry.adjust.iterate import (
     columns_of_inverse,
 )
 from geometry.adjust.reliability import detectable
-from geometry.adjust.rows import Flags, Group, Ints
+from geometry.adjust.rows import Flags, Group, Ints, picked
 from geometry.adjust.selected import inverse_blocks
 from geometry.checked import Array
 
@@ -101,7 +101,7 @@ def _shift_of_ends(
     used = np.repeat(ends >= 0, width, axis=1)
     shift = np.where(used, pulled[:, : at.shape[1]], 0.0)
     if datum is not None:
-        carried = np.where(row_columns[..., None] >= 0, datum.carried[row_columns], 0.0)
+        carried = picked(datum.carried, row_columns)
         motion = np.einsum("ra,rad->rd", coefficients, carried)
         back = np.einsum("rad,rd->ra", datum.spread[np.where(used, at, 0)], motion)
         shift = np.where(used, shift - back, 0.0)
@@ -132,8 +132,7 @@ def assess_known(
     """Judge a group of correlated known values: w = c'Pv / sqrt(c'P Qv P c)."""
     weight = group.weight
     inverse = columns_of_inverse(factor, group.columns, count)
-    used = group.columns >= 0
-    q = np.where(used[:, None], inverse[np.where(used, group.columns, 0)], 0.0)
+    q = picked(inverse, group.columns)
     evidence = weight - weight @ q @ weight
     pull = -(weight @ group.misclosure)
     redundancy = 1.0 - np.einsum("ab,ba->a", q, weight)

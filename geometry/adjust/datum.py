@@ -15,8 +15,9 @@ from dataclasses import dataclass
 import numpy as np
 
 from geometry.adjust.frontal import Factor
-from geometry.adjust.rows import Ints
+from geometry.adjust.rows import Ints, picked
 from geometry.checked import Array
+from geometry.errors import CoincidentPoints
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -71,7 +72,7 @@ def moved_to_datum(datum: Datum, blocks: Array, at: Ints, columns: Ints) -> Arra
     `columns` (k, w) are their unknowns, -1 where held.
     """
     spread = datum.spread[at]
-    carried = np.where(columns[..., None] >= 0, datum.carried[columns], 0.0)
+    carried = picked(datum.carried, columns)
     cross = np.einsum("kad,kbd->kab", carried, spread)
     inner = np.einsum("kad,de,kbe->kab", spread, datum.inner, spread)
     moved: Array = blocks - cross - np.swapaxes(cross, 1, 2) + inner
@@ -93,6 +94,11 @@ def fitted(
     across = float(np.sum(weights * (p[:, 1] * q[:, 0] - p[:, 0] * q[:, 1])))
     size = float(np.sum(weights[:, None] * p * p))
     angle = np.arctan2(across, along) if turn else 0.0
+    if (turn or scale) and size < 1e-12:
+        raise CoincidentPoints(
+            "The marks that carry the datum stand in one place.",
+            do="Correct their start coordinates or choose others.",
+        )
     if turn and scale:
         factor = np.hypot(along, across) / size
     else:

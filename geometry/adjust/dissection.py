@@ -45,7 +45,7 @@ def dissect(
     [1, 1, 2, 2]
     """
     pieces: list[Piece] = []
-    waiting = [(np.arange(len(sizes)), -1)]
+    waiting = [(np.arange(len(sizes)), -1)] if len(sizes) else []
     while waiting:
         nodes, parent = waiting.pop()
         inside = graph[nodes][:, nodes]

@@ -8,7 +8,12 @@ from dataclasses import dataclass
 import numpy as np
 
 from geometry import checked
-from geometry.adjust.observations import HeightDifference, Heights, check_measurement
+from geometry.adjust.observations import (
+    HeightDifference,
+    Heights,
+    check_measurement,
+    heights,
+)
 from geometry.adjust.rows import Group, Ints, Rows, weight_of
 from geometry.checked import Array
 from geometry.errors import EmptyInput, OutOfRange
@@ -130,6 +135,6 @@ def _names(
 def _known(number: Mapping[str, int], origin: float, group: Heights) -> KnownHeights:
     words = "the known heights " + ", ".join(group.names[:4])
     at = np.array([number[n] for n in group.names], dtype=np.intp)
-    values = checked.numbers("known heights", group.values_m) - origin
-    joint = checked.covariance("known covariance", group.covariance_m2, len(at))
-    return KnownHeights(at, values, weight_of(joint, words))
+    sound = heights(group.names, group.values_m, group.covariance_m2)
+    weight = weight_of(sound.covariance_m2, words)
+    return KnownHeights(at, sound.values_m - origin, weight)

@@ -69,7 +69,7 @@ def adjust_network(
     if free:
         held = _fewest_held(model)
         model = plane_model(points, observations, known, frozenset(), held)
-    searched = _search(model, alpha, snoops=snoops, robust=robust)
+    searched = _search(model, alpha, free=free, snoops=snoops, robust=robust)
     marks = tuple(datum) or model.names if free else ()
     return _report(model, observations, searched, marks, (alpha, power, global_alpha))
 
@@ -95,7 +95,9 @@ def _fewest_held(model: PlaneModel) -> list[tuple[str, int]]:
     return held
 
 
-def _search(model: PlaneModel, alpha: float, *, snoops: bool, robust: bool) -> Snooped:
+def _search(
+    model: PlaneModel, alpha: float, *, free: bool, snoops: bool, robust: bool
+) -> Snooped:
     start = model.unknowns(model.start)
     order = layout(model, start)
     try:
@@ -104,7 +106,7 @@ def _search(model: PlaneModel, alpha: float, *, snoops: bool, robust: bool) -> S
         weights = np.ones(len(model.table.kind))
         return Snooped(estimate(model, start, order, weights), weights)
     except NotDetermined:
-        raise undetermined_plane(model, start) from None
+        raise undetermined_plane(model, start, free=free) from None
 
 
 def _carried(

@@ -16,7 +16,13 @@ from numpy.typing import ArrayLike
 
 from geometry import checked
 from geometry.checked import Array
-from geometry.errors import CoincidentPoints, NotFinite, OutOfRange, WrongShape
+from geometry.errors import (
+    CoincidentPoints,
+    EmptyInput,
+    NotFinite,
+    OutOfRange,
+    WrongShape,
+)
 
 
 @dataclass(frozen=True, slots=True)
@@ -159,6 +165,8 @@ def _joint(
             "There must be one name for each known point.",
             where=f"There are {len(names)} names and {count} values.",
         )
+    if not count:
+        raise EmptyInput("A group of known points has no point in it.")
     if len(set(names)) != len(names):
         raise OutOfRange("A name stands twice in one group of known points.")
     given = np.asarray(sigma_m, dtype=np.float64)

@@ -22,6 +22,7 @@ from geometry.adjust.observations import (
     Distance,
     PlaneObservation,
     check_measurement,
+    coordinates,
 )
 from geometry.adjust.rows import Flags, Group, Ints, Rows, weight_of
 from geometry.checked import Array
@@ -187,9 +188,8 @@ def _at(number: Mapping[str, int], name: str, where: object) -> int:
 def _known(number: Mapping[str, int], origin: Array, group: Coordinates) -> Known:
     words = "the known points " + ", ".join(group.names[:4])
     at = np.array([_at(number, n, "known points") for n in group.names], dtype=np.intp)
-    values = checked.points("known coordinates", group.values_m) - origin
-    joint = checked.covariance("known covariance", group.covariance_m2, 2 * len(at))
-    return Known(at, values, weight_of(joint, words))
+    sound = coordinates(group.names, group.values_m, group.covariance_m2)
+    return Known(at, sound.values_m - origin, weight_of(sound.covariance_m2, words))
 
 
 def _table(

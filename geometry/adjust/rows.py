@@ -68,6 +68,14 @@ class Model(Protocol):
         """The measurements linearised at these unknowns."""
 
 
+def picked(values: Array, columns: Ints) -> Array:
+    """Rows of `values` (n, ...) by column number, zeros where it is -1."""
+    found = np.zeros((*columns.shape, *values.shape[1:]))
+    used = columns >= 0
+    found[used] = values[columns[used]]
+    return found
+
+
 def weight_of(covariance: Array, words: str) -> Array:
     """The inverse of a joint covariance, refusing one without full rank."""
     scale = 1.0 / np.sqrt(np.maximum(np.diag(covariance), 1e-300))

@@ -113,9 +113,17 @@ def _set_aside(
             state.ambiguous.append(together)
             named[list(together)] = True
             continue
+        if _spare(state) <= 1:
+            return
         for i in _worst_apart(state.found, size, limit):
             state.weights[i] = 0.0
         state.found = estimate(model, state.found.unknowns, order, state.weights)
+
+
+def _spare(state: Snooped) -> int:
+    """Degrees of freedom; the last one is never spent, or nothing would confirm it."""
+    known = sum(len(group.columns) for group in state.found.rows.groups)
+    return int((state.weights > 0).sum()) + known - len(state.found.unknowns)
 
 
 def standardised(found: Estimate) -> tuple[Array, Array]:

@@ -10,7 +10,7 @@ import numpy as np
 from geometry.adjust.datum import Datum
 from geometry.adjust.frontal import Factor
 from geometry.adjust.iterate import columns_of_inverse
-from geometry.adjust.rows import Ints
+from geometry.adjust.rows import Ints, picked
 from geometry.checked import Array
 
 
@@ -32,16 +32,14 @@ class Solution:
     def joint(self, at: Sequence[int]) -> Array:
         """Joint covariance (k w, k w) of the points with these numbers, m²."""
         columns = self.columns[list(at)].ravel()
-        used = columns >= 0
-        block = np.zeros((len(columns), len(columns)))
-        block[used] = self.columns_of_inverse(columns)[columns[used]]
+        block = picked(self.columns_of_inverse(columns), columns)
         block = 0.5 * (block + block.T)
         if self.datum is None:
             return block
         width = self.columns.shape[1]
         places = (np.array(at)[:, None] * width + np.arange(width)).ravel()
         spread = self.datum.spread[places]
-        carried = np.where(used[:, None], self.datum.carried[columns], 0.0)
+        carried = picked(self.datum.carried, columns)
         cross = carried @ spread.T
         moved: Array = block - cross - cross.T + spread @ self.datum.inner @ spread.T
         return moved
@@ -49,9 +47,7 @@ class Solution:
     def shifts(self, right: Array) -> Array:
         """Shift (n, w) of all points by a right-hand side of the normal equations."""
         change = self.factor.solve(right)
-        used = self.columns >= 0
-        moved = np.zeros(self.columns.shape)
-        moved[used] = change[self.columns[used]]
+        moved = picked(change, self.columns)
         if self.datum is not None:
             flat = moved.ravel()
             flat = flat - self.datum.spread @ (self.datum.gathered.T @ flat)

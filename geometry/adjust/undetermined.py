@@ -97,8 +97,14 @@ def undetermined_levels(model: HeightModel) -> Undetermined:
     )
 
 
-def undetermined_plane(model: PlaneModel, unknowns: Array) -> Undetermined:
-    """Which points can move, which way, and the measurements that would stop them."""
+def undetermined_plane(
+    model: PlaneModel, unknowns: Array, *, free: bool = False
+) -> Undetermined:
+    """Which points can move, which way, and the measurements that would stop them.
+
+    In a `free` network points are loose against the others, so that no azimuth of
+    their movement and no position can be given, only distances and angles.
+    """
     rows = model.rows(unknowns)
     matrix, _ = normal(rows, model.count, np.ones(len(rows.misclosure)))
     basis = free_motions(matrix, model.nodes)
@@ -107,9 +113,10 @@ def undetermined_plane(model: PlaneModel, unknowns: Array) -> Undetermined:
     used = model.columns >= 0
     motion[used] = basis[model.columns[used]]
     motion = _orthonormal(motion)
-    return Undetermined(
-        _loose(model.names, motion), _missing(model.names, positions, motion)
-    )
+    loose = _loose(model.names, motion)
+    if free:
+        loose = tuple(Loose(one.point, None) for one in loose)
+    return Undetermined(loose, _missing(model.names, positions, motion, free))
 
 
 def _orthonormal(motion: Array) -> Array:
@@ -132,18 +139,19 @@ def _loose(names: tuple[str, ...], motion: Array) -> tuple[Loose, ...]:
 
 
 def _missing(
-    names: tuple[str, ...], positions: Array, motion: Array
+    names: tuple[str, ...], positions: Array, motion: Array, free: bool
 ) -> tuple[Missing, ...]:
     size = np.sqrt((motion**2).sum(axis=(1, 2)))
     loose = np.flatnonzero(size > MOVES * size.max(initial=0.0))
     fixed = np.flatnonzero(size <= MOVES * size.max(initial=0.0))
     tried = _candidates(positions, loose, fixed)
+    tried = [one for one in tried if not (free and one[0] in ("position", "azimuth"))]
     kinds = [Missing(kind, tuple(names[i] for i in at)) for kind, at, _ in tried]
     effect = np.zeros((len(tried), motion.shape[2]))
     for k, (_, at, row) in enumerate(tried):
         effect[k] = np.einsum("pa,pad->d", row, motion[list(at)])
     picked: list[Missing] = []
-    while effect.shape[1] and len(picked) < 6:
+    while effect.size and len(picked) < 6:
         strength = np.sqrt((effect**2).sum(axis=1))
         best = int(np.argmax(strength))
         if strength[best] < 1e-9:
@@ -167,27 +175,36 @@ def _candidates(positions: Array, loose: Ints, fixed: Ints) -> list[Candidate]:
     to an angle, and both to a position where some point is fixed.
     """
     tried: list[Candidate] = []
-    for p in loose[:60]:
-        for q in _nearest(positions, int(p), fixed):
-            tried.append(("distance", (q, int(p)), _distance(positions, q, int(p))))
-            others = [b for b in _nearest(positions, q, fixed) if b != q]
-            row = 0.9 * _turn(positions, q, int(p))
-            if others:
-                bent = np.vstack([row[0], 0 * row[0], row[1]])
-                tried.append(("angle", (q, others[0], int(p)), bent))
-            else:
-                tried.append(("azimuth", (q, int(p)), row))
-        for q in _nearest(positions, int(p), loose[:60]):
-            row = 0.3 * _distance(positions, q, int(p))
-            tried.append(("distance", (q, int(p)), row))
-            if not len(fixed):
-                row = 0.3 * _turn(positions, q, int(p))
-                tried.append(("azimuth", (q, int(p)), row))
-        share = 0.5 if not len(fixed) else 0.05
-        tried.extend(
-            ("position", (int(p),), share * np.eye(2)[axis : axis + 1])
-            for axis in (0, 1)
-        )
+    for p in (int(i) for i in loose[:60]):
+        for q in _nearest(positions, p, fixed):
+            tried.extend(_sights(positions, q, p, fixed, 1.0))
+        for q in _nearest(positions, p, loose[:60]):
+            tried.extend(_sights(positions, q, p, fixed, 0.3))
+        share = 0.05 if len(fixed) else 0.5
+        axes = (share * np.eye(2)[axis : axis + 1] for axis in (0, 1))
+        tried.extend(("position", (p,), axis) for axis in axes)
+    return tried
+
+
+def _sights(
+    positions: Array, q: int, p: int, fixed: Ints, share: float
+) -> list[Candidate]:
+    """What could be measured at q to p; an angle needs a backsight that stands."""
+    tried: list[Candidate] = [("distance", (q, p), share * _distance(positions, q, p))]
+    turn = 0.9 * share * _turn(positions, q, p)
+    backsights = [b for b in _nearest(positions, q, fixed) if b not in (p, q)]
+    if backsights:
+        b = backsights[0]
+        back = 0.9 * share * _turn(positions, q, b)
+        row = np.vstack([turn[0] - back[0], -back[1], turn[1]])
+        tried.append(("angle", (q, b, p), row))
+        return tried
+    tried.append(("azimuth", (q, p), turn))
+    others = [b for b in _nearest(positions, q, np.arange(len(positions))) if b != p]
+    for b in others[:3]:
+        back = 0.2 * share * _turn(positions, q, b)
+        row = np.vstack([turn[0] * 0.2 / 0.9 - back[0], -back[1], turn[1] * 0.2 / 0.9])
+        tried.append(("angle", (q, b, p), row))
     return tried
 
 

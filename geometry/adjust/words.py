@@ -94,7 +94,14 @@ def _opening(adjusted: NetworkAdjustment | LevelAdjustment) -> str:
 
 
 def say_measurement(report: MeasurementReport, *, small: Say = millimetres) -> str:
-    """One measurement: whether it fits, what it is off by, what it could hide."""
+    """One measurement: whether it fits, what it is off by, what it could hide.
+
+    >>> from geometry.adjust import HeightDifference, adjust_levels
+    >>> runs = [HeightDifference("A", "B", 1.0, 0.001)] * 2
+    >>> net = adjust_levels(runs, fixed={"A": 100.0})
+    >>> say_measurement(net.measurements[0])
+    'Levels A to B fits; an error of 6 mm would have been seen.'
+    """
     name = report.words[0].upper() + report.words[1:]
     if report.verdict == Verdict.NOT_TESTED:
         return f"{name}: nothing checks it."

@@ -2,11 +2,15 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
+from itertools import combinations
 
 from geometry.adjust.reliability import GlobalTest
 from geometry.checked import Array
 from geometry.ellipse import Ellipse
+from geometry.errors import OutOfRange
+from geometry.moved.evidence import Evidence
+from geometry.moved.suspicion import likeness
 from geometry.verdicts import Verdict
 
 
@@ -101,7 +105,24 @@ class MovedAnswer:
     alpha: float
     power: float
     marks_used: tuple[str, ...]
+    evidence: Evidence = field(repr=False)
 
     def mark(self, name: str) -> MarkReport:
-        """The report of one mark; KeyError for a name that is not there."""
-        return next(m for m in self.marks if m.mark == name)
+        """The report of one mark; OutOfRange for a name that is not there."""
+        for report in self.marks:
+            if report.mark == name:
+                return report
+        raise OutOfRange(f"Mark {name} is not among those asked about.")
+
+    def hard_to_tell(self, limit: float = 0.9) -> tuple[tuple[str, str, float], ...]:
+        """Pairs of marks these measurements can hardly tell apart, with their likeness.
+
+        The likeness is the canonical correlation of their suspicions: 1 when a move of
+        one always looks like some move of the other.
+        """
+        seen = [i for i, m in enumerate(self.marks) if m.rank]
+        pairs = (
+            (self.marks[i].mark, self.marks[j].mark, likeness(self.evidence, i, j))
+            for i, j in combinations(seen, 2)
+        )
+        return tuple(pair for pair in pairs if pair[2] >= limit)

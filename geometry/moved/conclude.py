@@ -68,6 +68,7 @@ def conclude(
         alpha=alpha,
         power=power,
         marks_used=tuple(n for n, rank in zip(names, seen, strict=True) if rank),
+        evidence=evidence,
     )
 
 

@@ -119,6 +119,15 @@ def compare_level_epochs(
 ) -> EpochAnswer:
     """Which benchmark rose or fell between two levellings; see `compare_epochs`.
 
+    >>> from geometry.adjust import HeightDifference, adjust_levels
+    >>> def levelled(b):
+    ...     z = {"A": 0.0, "B": b, "C": 2.0, "D": 1.5}
+    ...     return adjust_levels([HeightDifference(p, q, z[q] - z[p], 0.0005)
+    ...                           for p in z for q in z if p < q], free=True)
+    >>> compared = compare_level_epochs(levelled(1.0), levelled(0.98))
+    >>> [m.mark for m in compared.answer.moved], compared.stable
+    (['B'], ('A', 'C', 'D'))
+
     Raises EmptyInput, OutOfRange, Singular.
     """
     names = _common(first.names, second.names, marks)

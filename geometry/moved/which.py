@@ -16,7 +16,7 @@ from geometry.adjust.observations import (
     PlaneObservation,
 )
 from geometry.adjust.report import LevelAdjustment, NetworkAdjustment
-from geometry.adjust.rows import weight_of
+from geometry.adjust.rows import picked, weight_of
 from geometry.checked import Array
 from geometry.moved.answer import MovedAnswer
 from geometry.moved.conclude import conclude
@@ -127,8 +127,7 @@ def _evidence(
     weight = weight_of(covariance, "the recorded marks")
     columns = net.solution.columns[[net.number(n) for n in names]].ravel()
     q = net.solution.columns_of_inverse(columns)
-    inner = np.where(columns[:, None] >= 0, q[columns], 0.0)
-    strength = weight - weight @ inner @ weight
+    strength = weight - weight @ picked(q, columns) @ weight
     width = len(off) // len(names)
     prior = [
         float(np.linalg.eigvalsh(weight[i : i + width, i : i + width])[-1])

@@ -44,7 +44,15 @@ measurement between these marks would tell: bring in another mark.
 
 
 def say_mark(report: MarkReport, *, small: Say = millimetres) -> str:
-    """One mark: its verdict, and the smallest move that would have been seen."""
+    """One mark: its verdict, and the smallest move that would have been seen.
+
+    >>> from geometry.adjust import HeightDifference, heights
+    >>> from geometry.moved import which_benchmark_moved
+    >>> marks = heights(["BM1", "BM2", "BM3"], [10.0, 12.0, 11.0], 0.001)
+    >>> runs = [HeightDifference("BM1", "BM2", 2.0, 0.001)]
+    >>> say_mark(which_benchmark_moved(marks, runs).mark("BM3"))
+    'BM3: No spare measurement reaches it.'
+    """
     if report.verdict != Verdict.PASS or report.smallest_m is None:
         return f"{report.mark}: {report.reason}"
     seen = small(report.smallest_m)
@@ -54,7 +62,17 @@ def say_mark(report: MarkReport, *, small: Say = millimetres) -> str:
 def say_epochs(
     compared: EpochAnswer, *, small: Say = millimetres, whole: Say = metres
 ) -> str:
-    """The comparison of two epochs in a few sentences."""
+    """The comparison of two epochs in a few sentences.
+
+    >>> from geometry.adjust import HeightDifference, adjust_levels
+    >>> from geometry.moved import compare_level_epochs
+    >>> def levelled(b):
+    ...     z = {"A": 0.0, "B": b, "C": 2.0, "D": 1.5}
+    ...     return adjust_levels([HeightDifference(p, q, z[q] - z[p], 0.0005)
+    ...                           for p in z for q in z if p < q], free=True)
+    >>> say_epochs(compare_level_epochs(levelled(1.0), levelled(0.98)))
+    'B fell 20 mm, give or take 1 mm. Compared with A, C and D, which stand.'
+    """
     words = say_moved(compared.answer, small=small, whole=whole)
     if compared.verdict != Verdict.FAIL:
         return words

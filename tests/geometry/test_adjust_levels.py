@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import math
+
 import numpy as np
 import pytest
 from hypothesis import given, settings
@@ -13,7 +15,13 @@ from geometry.adjust import (
     adjust_levels,
     heights,
 )
-from geometry.errors import CoincidentPoints, EmptyInput, NotFinite, OutOfRange
+from geometry.errors import (
+    CoincidentPoints,
+    EmptyInput,
+    GeometryError,
+    NotFinite,
+    OutOfRange,
+)
 from geometry.verdicts import Verdict
 
 KRUMM_NET = [
@@ -319,3 +327,38 @@ def test_shares_of_redundancy_sum_to_the_degrees_of_freedom_at_any_height(seed, 
         assert again.height(name).height_m == pytest.approx(
             net.height(name).height_m, abs=1e-8
         )
+
+
+def test_between_benchmarks_held_at_both_ends_a_run_is_still_checked():
+    run = [HeightDifference("A", "B", 1.05, 0.002)]
+    net = adjust_levels(run, fixed={"A": 10.0, "B": 11.0})
+
+    assert net.dof == 1
+    assert net.measurements[0].residual == pytest.approx(-0.05)
+    assert net.verdict == Verdict.FAIL
+
+
+ODD = st.one_of(
+    st.floats(-50, 50), st.sampled_from([1e7, 1e300, math.inf, -math.inf, math.nan])
+)
+
+
+@settings(max_examples=150, deadline=None)
+@given(st.data())
+def test_any_levels_give_finite_heights_or_a_named_error(data):
+    pick = st.sampled_from("ABCD")
+    runs = []
+    for _ in range(data.draw(st.integers(0, 6))):
+        sigma = data.draw(st.sampled_from([1e-3, 1e-3, 0.0, math.nan]))
+        ends = data.draw(pick), data.draw(pick)
+        runs.append(HeightDifference(*ends, data.draw(ODD), sigma))
+    held = {n: data.draw(ODD) for n in "AB"[: data.draw(st.integers(0, 2))]}
+    free = data.draw(st.booleans())
+    robust = data.draw(st.booleans())
+    try:
+        net = adjust_levels(runs, fixed=held, free=free, robust=robust)
+    except GeometryError as error:
+        assert error.what
+        return
+    assert np.isfinite(net.heights_m).all()
+    assert np.isfinite(net.variances_m2).all()

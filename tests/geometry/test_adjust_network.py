@@ -22,11 +22,13 @@ from geometry.ellipse import ellipse
 from geometry.errors import (
     CoincidentPoints,
     EmptyInput,
+    GeometryError,
     NotFinite,
     OutOfRange,
     WrongShape,
 )
 from geometry.verdicts import Verdict
+from tests.geometry.adjust_networks import network
 
 SECOND = math.pi / 648000
 
@@ -148,38 +150,6 @@ def test_a_distance_resection_gives_the_printed_position_and_redundancies():
     assert net.measurements[0].detectable == pytest.approx(0.0584, abs=6e-5)
 
 
-def network(rng, count=7, noise=1.0):
-    """A round of points, all kinds of measurement, control with full covariance."""
-    turn = np.linspace(0, 2 * math.pi, count, endpoint=False)
-    true = np.stack([80 * np.cos(turn), 60 * np.sin(turn)], 1)
-    true += rng.normal(0, 8, true.shape)
-    names = [f"P{i}" for i in range(count)]
-    at = dict(zip(names, true, strict=True))
-    booked = []
-    for a in names:
-        circle = rng.uniform(0, 2 * math.pi)
-        others = [n for n in names if n != a]
-        for b in rng.permutation(others)[:4]:
-            d = at[b] - at[a]
-            azimuth = math.atan2(*d)
-            length = math.hypot(*d) + noise * rng.normal(0, 2e-3)
-            booked.append(Distance(a, str(b), length, 2e-3))
-            reading = azimuth - circle + noise * rng.normal(0, 2e-5)
-            booked.append(Direction(a, str(b), reading, 2e-5))
-        d, e = at[others[0]] - at[a], at[others[1]] - at[a]
-        angle = math.atan2(*e) - math.atan2(*d) + noise * rng.normal(0, 3e-5)
-        booked.append(Angle(a, others[0], others[1], angle % (2 * math.pi), 3e-5))
-    d = at["P3"] - at["P0"]
-    booked.append(
-        Azimuth("P0", "P3", math.atan2(*d) + noise * rng.normal(0, 5e-5), 5e-5)
-    )
-    half = rng.normal(0, 2e-3, (6, 6))
-    joint = half @ half.T + 1e-6 * np.eye(6)
-    error = noise * np.linalg.cholesky(joint) @ rng.normal(size=6)
-    known = coordinates(names[:3], true[:3] + error.reshape(3, 2), joint)
-    return names, at, booked, known
-
-
 def residuals_by_hand(names, booked, known, rounds, x):
     at = dict(zip(names, x[: 2 * len(names)].reshape(-1, 2), strict=True))
     turn = dict(zip(rounds, x[2 * len(names) :], strict=True))
@@ -273,99 +243,6 @@ def test_covariances_and_tests_agree_with_simulation():
     assert np.mean(tests) < 0.12
 
 
-def test_a_free_network_has_the_covariance_of_the_pseudoinverse():
-    names, at, booked, _ = network(np.random.default_rng(8))
-    booked = [o for o in booked if not isinstance(o, Azimuth)]
-    net = adjust_network(at, booked, free=True, snoops=False)
-    a = net.rows.toarray()
-    held = adjust_network(at, booked, fixed=["P0", "P1"], snoops=False)
-    assert net.squares < held.squares
-    # the full design of all coordinates at the adjusted positions
-    full = jacobian(names, dict(zip(names, net.positions_m, strict=True)), booked)
-    inverse = np.linalg.pinv(full.T @ full, rcond=1e-11)
-    positions = slice(0, 2 * len(names))
-    g = motions(net.positions_m)
-    s = np.eye(2 * len(names)) - g @ np.linalg.inv(g.T @ g) @ g.T
-    expected = s @ inverse[positions, positions] @ s.T
-
-    assert a.shape[0] == len(booked)
-    assert net.joint_covariance(names) == pytest.approx(expected, abs=2e-11)
-    for i, name in enumerate(names):
-        block = expected[2 * i : 2 * i + 2, 2 * i : 2 * i + 2]
-        assert net.point(name).covariance_m2 == pytest.approx(block, abs=2e-11)
-    # inner constraints: on the average the points stay where they were
-    assert g.T @ net.shifts_m.ravel() == pytest.approx(np.zeros(3), abs=1e-6)
-
-
-def motions(positions):
-    m = positions - positions.mean(axis=0)
-    n = len(m)
-    turn = (m[:, ::-1] * (1, -1)).ravel()
-    return np.stack([np.tile([1.0, 0], n), np.tile([0.0, 1], n), turn], 1)
-
-
-def jacobian(names, at, booked):
-    rounds = list(dict.fromkeys(o.station for o in booked if isinstance(o, Direction)))
-    x = np.concatenate([*(at[n] for n in names), np.zeros(len(rounds))])
-
-    def f(y):
-        where = dict(zip(names, y[: 2 * len(names)].reshape(-1, 2), strict=True))
-        turn = dict(zip(rounds, y[2 * len(names) :], strict=True))
-        out = []
-        for o in booked:
-            if isinstance(o, Distance):
-                out.append(math.dist(where[o.start], where[o.end]) / o.sigma_m)
-                continue
-            a, b = (
-                (o.station, o.target)
-                if isinstance(o, Direction)
-                else (o.station, o.foresight)
-            )
-            v = math.atan2(*(where[b] - where[a]))
-            v -= turn[a] if isinstance(o, Direction) else 0.0
-            if isinstance(o, Angle):
-                v -= math.atan2(*(where[o.backsight] - where[a]))
-            out.append(v / o.sigma_rad)
-        return np.array(out)
-
-    step = 1e-5
-    columns = []
-    for k in range(len(x)):
-        e = np.zeros(len(x))
-        e[k] = step
-        d = f(x + e) - f(x - e)
-        columns.append(d / (2 * step))
-    return np.array(columns).T
-
-
-def test_the_datum_of_a_free_network_can_be_carried_by_some_marks_only():
-    names, at, booked, _ = network(np.random.default_rng(8))
-    booked = [o for o in booked if not isinstance(o, Azimuth)]
-    net = adjust_network(at, booked, free=True, datum=names[:3], snoops=False)
-    whole = adjust_network(at, booked, free=True, snoops=False)
-    g = motions(net.positions_m)
-    b = np.diag([1.0] * 6 + [0.0] * (2 * len(names) - 6))
-    s = np.eye(2 * len(names)) - g @ np.linalg.inv(g.T @ b @ g) @ g.T @ b
-
-    expected = s @ whole.joint_covariance(names) @ s.T
-    assert net.joint_covariance(names) == pytest.approx(expected, abs=1e-11)
-    assert net.free_datum == ("P0", "P1", "P2")
-    shares = [m.redundancy for m in net.measurements]
-    assert shares == pytest.approx([m.redundancy for m in whole.measurements])
-
-
-def test_angles_alone_leave_the_size_free_and_the_network_keeps_it():
-    names, at, booked, _ = network(np.random.default_rng(3))
-    turns = [o for o in booked if isinstance(o, Direction)]
-    net = adjust_network(at, turns, free=True, snoops=False)
-    centred = net.positions_m - net.positions_m.mean(axis=0)
-    true = np.array([at[n] for n in names])
-
-    assert net.dof == len(turns) - (2 * len(names) + len(names) - 4)
-    size = np.hypot(*centred.T) @ np.hypot(*(true - true.mean(0)).T)
-    assert size == pytest.approx(float((centred**2).sum()), rel=1e-6)
-
-
 def test_the_effect_of_an_undetected_error_is_what_a_changed_distance_does():
     _, at, booked, known = network(np.random.default_rng(21))
     net = adjust_network(at, booked, known=[known], snoops=False)
@@ -457,3 +334,52 @@ def test_a_covariance_without_full_rank_is_refused_with_the_points_named():
     known = coordinates(["A", "B"], [[0, 0], [50, 0]], np.ones((4, 4)))
     with pytest.raises(OutOfRange, match="A, B"):
         adjust_network(SQUARE, [Distance("A", "B", 50, 0.1)], known=[known])
+
+
+def test_between_points_all_held_a_measurement_is_still_checked():
+    net = adjust_network(SQUARE, [Distance("A", "B", 50.05, 0.002)], fixed="AB")
+
+    assert net.dof == 1
+    assert net.measurements[0].redundancy == pytest.approx(1.0)
+    assert net.measurements[0].verdict == Verdict.FAIL
+    assert net.point("A").fixed
+
+
+def test_known_points_and_values_must_be_of_one_number():
+    from geometry.adjust import Coordinates
+
+    known = Coordinates(("A", "B"), np.zeros((1, 2)), np.eye(4))
+    with pytest.raises(WrongShape):
+        adjust_network(SQUARE, [Distance("A", "B", 50, 0.1)], known=[known])
+    with pytest.raises(EmptyInput):
+        coordinates([], np.zeros((0, 2)), 0.1)
+
+
+NUMBERS = st.one_of(
+    st.floats(-200, 200),
+    st.sampled_from([0.0, 1e7, -1e7, 1e300, math.inf, -math.inf, math.nan]),
+)
+
+
+@settings(max_examples=200, deadline=None)
+@given(st.data())
+def test_any_input_gives_finite_positions_or_a_named_error(data):
+    names = ["A", "B", "C", "D"][: data.draw(st.integers(0, 4))]
+    points = {n: (data.draw(NUMBERS), data.draw(NUMBERS)) for n in names}
+    pick = st.sampled_from([*names, "Z"])
+    booked = []
+    for _ in range(data.draw(st.integers(0, 8))):
+        kind = data.draw(st.sampled_from([Distance, Direction, Azimuth, Angle]))
+        ends = [data.draw(pick) for _ in range(3 if kind is Angle else 2)]
+        sigma = data.draw(st.sampled_from([1e-3, 1e-3, 1e-3, 0.0, math.nan]))
+        booked.append(kind(*ends, data.draw(NUMBERS), sigma))
+    fixed = names[: data.draw(st.integers(0, 2))]
+    options = {"fixed": fixed} if data.draw(st.booleans()) else {"free": True}
+    try:
+        net = adjust_network(points, booked, **options)
+    except GeometryError as error:
+        assert error.what
+        return
+    assert np.isfinite(net.positions_m).all()
+    assert np.isfinite(net.covariances_m2).all()
+    assert np.isfinite(net.squares)

@@ -139,6 +139,23 @@ def test_a_wrong_distance_between_good_marks_is_called_a_measurement():
     assert answer.mark("M4").verdict == Verdict.PASS
 
 
+def test_pairs_that_no_such_measurements_could_tell_apart_are_known_beforehand():
+    two = which_moved(
+        coordinates(named(2), RING[[0, 3]], 0.003),
+        shots(RING[[0, 3]], {"S1": (0.0, 0.0)}),
+        points={"S1": (0.0, 0.0)},
+    )
+    eight = which_moved(
+        coordinates(named(8), RING, 0.003), shots(RING, SETUPS), points=SETUPS
+    )
+
+    ((one, other, likeness),) = two.hard_to_tell()
+    assert (one, other) == ("M0", "M1")
+    assert likeness == pytest.approx(1.0)
+    assert eight.hard_to_tell() == ()
+    assert 0.2 < max(p[2] for p in eight.hard_to_tell(0.0)) < 0.5
+
+
 def test_two_moved_marks_are_both_found_and_estimated_together():
     true = moved(moved(RING, 1, 0.03, 0.0), 6, -0.02, 0.025)
     record = coordinates(named(8), RING, 0.003)
