@@ -26,7 +26,10 @@ When it cannot answer
 - `DoesNotSettle`: start coordinates too far from the measurements
 
 Limits of tests
-- `critical_w`, `noncentrality`, `detectable`, `matching_alpha`, `global_test`
+- `critical_w`: how large a standardised residual may be
+- `noncentrality`, `detectable`: how large an error must be to be found
+- `global_test`, `matching_alpha`: the whole, at a level that matches single tests
+- `ellipse_factor`: confidence ellipses when sigma0 was estimated
 """
 
 from __future__ import annotations
@@ -51,6 +54,7 @@ from geometry.adjust.reliability import (
     GlobalTest,
     critical_w,
     detectable,
+    ellipse_factor,
     global_test,
     matching_alpha,
     noncentrality,
@@ -93,6 +97,7 @@ __all__ = [
     "coordinates",
     "critical_w",
     "detectable",
+    "ellipse_factor",
     "global_test",
     "heights",
     "matching_alpha",

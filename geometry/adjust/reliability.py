@@ -104,6 +104,22 @@ def detectable(alpha: float = 0.001, power: float = 0.80) -> float:
     return math.sqrt(noncentrality(alpha, power, 1))
 
 
+def ellipse_factor(dof: int, probability: float = 0.95) -> float:
+    """Half-axes of an ellipse over the standard ones when sigma0 was estimated.
+
+    The square root of 2 F(2, dof); for a known sigma0 the factor is 2.4477.
+
+    >>> round(ellipse_factor(10), 3)
+    2.865
+
+    Raises OutOfRange without any degree of freedom.
+    """
+    _check(probability)
+    if dof < 1:
+        raise OutOfRange("Without redundancy no precision can be estimated.")
+    return math.sqrt(2.0 * float(special.fdtri(2, dof, probability)))
+
+
 def matching_alpha(dof: int, alpha: float = 0.001, power: float = 0.80) -> float:
     """Level of a global test that sees what one test at `alpha` sees (B-method).
 

@@ -18,6 +18,7 @@ from geometry.adjust import (
     coordinates,
     critical_w,
     detectable,
+    ellipse_factor,
     matching_alpha,
     noncentrality,
 )
@@ -240,6 +241,18 @@ def test_limits_of_chi_square_and_others_are_those_of_the_published_tables():
         assert test.limit == pytest.approx(five, abs=6e-4)
         assert test.upper == pytest.approx(upper, abs=6e-4)
         assert test.lower == pytest.approx(lower, abs=6e-4)
+
+
+def test_ellipses_with_an_estimated_sigma_are_wider_by_the_f_distribution():
+    # from F 5 % (2, 10) 4.103 and (2, 20) 3.493, NIST/SEMATECH 1.3.6.7.3, from memory
+    assert ellipse_factor(10) == pytest.approx(math.sqrt(2 * 4.103), abs=5e-4)
+    assert ellipse_factor(10) == pytest.approx(2.8646, abs=1e-4)
+    assert ellipse_factor(20) == pytest.approx(2.643, abs=5e-4)
+    # without end it is the factor of a known sigma, and 39.35 % is inside one sigma
+    assert ellipse_factor(10**7) == pytest.approx(2.4477, abs=5e-5)
+    assert ellipse_factor(10**7, 0.39347) == pytest.approx(1.0, abs=5e-5)
+    with pytest.raises(OutOfRange):
+        ellipse_factor(0)
 
 
 def test_many_measurements_widen_the_limit_so_that_a_clean_net_stays_whole():

@@ -1,8 +1,8 @@
 """Which mark moved: false alarms, power, and who is named, site by site.
 
 Run with `python -m tests.simulations.moved_marks [runs]`. Fixed seeds; the default of
-300 runs takes about three minutes. Recorded control 3 mm, distances 2 mm + 2 ppm, directions
-5 seconds, 1 mm centring allowed for.
+300 runs takes about three minutes. Recorded control 3 mm, distances 2 mm + 2 ppm,
+directions 5 seconds, 1 mm centring allowed for.
 """
 
 from __future__ import annotations
