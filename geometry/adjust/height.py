@@ -15,7 +15,7 @@ from geometry.adjust.observations import (
     heights,
 )
 from geometry.adjust.rows import Group, Ints, Rows, weight_of
-from geometry.checked import Array
+from geometry.checked import LARGEST_M, Array
 from geometry.errors import EmptyInput, OutOfRange
 
 NEGLIGIBLE_M = 1e-9
@@ -100,7 +100,11 @@ def height_model(
         for ends in ([o.start for o in observations], [o.end for o in observations])
     )
     for name in fixed:
-        checked.number(f"the height of {name}", fixed[name])
+        if abs(checked.number(f"the height of {name}", fixed[name])) > LARGEST_M:
+            raise OutOfRange(
+                f"The height of {name} is larger than any on Earth.",
+                do="Check its unit.",
+            )
     value = np.array([o.value_m for o in observations])
     sigma = np.array([o.sigma_m for o in observations])
     given = [*fixed.values(), *(float(z) for k in known for z in k.values_m)]

@@ -24,6 +24,9 @@ from geometry.errors import (
     WrongShape,
 )
 
+SMALLEST_SIGMA = 1e-12
+"""Metres or radians; nothing is measured better, and squares must not overflow."""
+
 
 @dataclass(frozen=True, slots=True)
 class Distance:
@@ -153,6 +156,8 @@ def heights(
     Raises WrongShape, NotFinite, OutOfRange.
     """
     values = checked.numbers("values_m", values_m)
+    if float(np.abs(values).max(initial=0.0)) > checked.LARGEST_M:
+        raise OutOfRange("A known height is larger than any on Earth.")
     joint = _joint(names, sigma_m, len(values), 1)
     return Heights(tuple(names), values, joint)
 
@@ -189,7 +194,13 @@ def check_measurement(
             where=f"It is the {one}.",
             do="Fill in the value and its standard deviation, or leave it out.",
         )
-    if sigma <= 0:
+    if abs(value) > checked.LARGEST_M:
+        raise OutOfRange(
+            "A measurement is larger than any on Earth.",
+            where=f"It is the {one}.",
+            do="Check its unit.",
+        )
+    if not SMALLEST_SIGMA <= sigma <= checked.LARGEST_M:
         raise OutOfRange(
             "A standard deviation must be greater than zero.",
             where=f"It belongs to the {one}.",

@@ -21,6 +21,9 @@ from geometry.errors import OutOfRange
 Ints = NDArray[np.intp]
 Flags = NDArray[np.bool_]
 
+SMALLEST_VARIANCE = 1e-24
+"""Of a known value, m²: less is no uncertainty at all."""
+
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Group:
@@ -78,10 +81,11 @@ def picked(values: Array, columns: Ints) -> Array:
 
 def weight_of(covariance: Array, words: str) -> Array:
     """The inverse of a joint covariance, refusing one without full rank."""
-    scale = 1.0 / np.sqrt(np.maximum(np.diag(covariance), 1e-300))
+    least = float(np.diag(covariance).min(initial=np.inf))
+    scale = 1.0 / np.sqrt(np.maximum(np.diag(covariance), SMALLEST_VARIANCE))
     correlation = covariance * np.outer(scale, scale)
     lowest = float(np.linalg.eigvalsh(correlation)[0])
-    if lowest < 1e-12:
+    if lowest < 1e-12 or least < SMALLEST_VARIANCE:
         raise OutOfRange(
             "A joint covariance leaves some direction without any uncertainty.",
             where=f"It is the covariance of {words}.",

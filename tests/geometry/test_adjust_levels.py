@@ -291,6 +291,9 @@ def test_a_free_net_keeps_its_datum_marks_on_the_average():
         ([HeightDifference("A", "B", float("nan"), 0.001)], {"A": 0.0}, NotFinite),
         ([HeightDifference("A", "B", 1.0, 0.0)], {"A": 0.0}, OutOfRange),
         ([HeightDifference("A", "B", 1.0, 0.001)], {"A": float("inf")}, NotFinite),
+        ([HeightDifference("A", "B", 1.0, 0.001)], {"A": 1e300}, OutOfRange),
+        ([HeightDifference("A", "B", 1e300, 0.001)], {"A": 1.0}, OutOfRange),
+        ([HeightDifference("A", "B", 1.0, 1e-300)], {"A": 1.0}, OutOfRange),
     ],
 )
 def test_levels_that_no_adjustment_could_use_are_refused_by_name(runs, held, error):
