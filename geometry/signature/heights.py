@@ -32,6 +32,8 @@ from geometry.signature.words import METRES, Words
 _OF_THE_LIST = frozenset({Kind.ROD, Kind.HEIGHT_FROM, Kind.SIGN, Kind.REFERENCE})
 """Causes that belong to certain shots, so no other place foretells them."""
 
+_WORTH_M = 0.005
+
 
 def height_signature(
     points: ArrayLike,
@@ -129,15 +131,20 @@ def _reshoot(first: Weighed, second: Weighed, plan: Array, words: Words) -> Next
     )
     gaps = np.abs(a - b)[:, 0]
     row = int(np.argmax(gaps))
+    gap = float(gaps[row])
+    again = (
+        f" Then stake {row + 1} of the list again, where the two causes differ by "
+        f"{words.length(gap)}."
+    )
     return NextShot(
         point=plan[row],
         candidate=None,
-        differ_m=float(gaps[row]),
+        differ_m=gap,
         times=0.0,
         decides=False,
-        sentence="Shoot a benchmark with each rod setting that was used, and stake "
-        f"{row + 1} of the list again: the two causes differ there by "
-        f"{words.length(float(gaps[row]))}.",
+        sentence="Shoot a benchmark with each rod setting that was used: an error of "
+        "instrument or rod shows there, one of the plan does not."
+        + (again if gap > _WORTH_M else ""),
     )
 
 

@@ -14,6 +14,7 @@ import numpy as np
 from scipy.spatial import cKDTree
 
 from geometry.match import fit_similarity, match_shots, nearest_marks
+from geometry.signature import setup, signature
 
 COUNT = 100_000
 
@@ -28,6 +29,31 @@ def seconds(work: Callable[[], object], rounds: int = 3) -> float:
     return best
 
 
+Row = tuple[str, float, str, float, str]
+
+
+def signatures(rng: np.random.Generator) -> list[Row]:
+    """One setup with a prism constant, twelve control marks in reach."""
+    marks = rng.uniform(-150, 150, (12, 2))
+    at = setup(marks[0], marks[1])
+    rows: list[Row] = []
+    for count in (25, 200):
+        plan = rng.uniform(-90, 90, (count, 2))
+        d = plan - at.at
+        shots = plan + 0.03 * d / np.hypot(*d.T)[:, None]
+        shots += rng.normal(0, 0.004, plan.shape)
+        design = np.column_stack([np.ones(count), d])
+        took = seconds(
+            lambda a=plan, b=shots: signature(a, b, [at], marks=marks, rng=rng), 10
+        )
+        base = seconds(
+            lambda a=design, b=shots - plan: np.linalg.lstsq(a, b, rcond=None), 10
+        )
+        name = f"one signature, {count} shots"
+        rows.append((name, took, "one numpy least squares", base, "0.025 s"))
+    return rows
+
+
 def main() -> None:
     rng = np.random.default_rng(1)
     plan = rng.uniform(0, 20_000, (COUNT, 2)) + np.array([5e5, 4.2e6])
@@ -40,7 +66,7 @@ def main() -> None:
 
     lookup = {name: i for i, name in enumerate(names)}
     design = np.column_stack([plan, np.ones(COUNT)])
-    rows = [
+    rows: list[Row] = [
         (
             "match by number and place",
             seconds(lambda: match_shots(names, plan, written, shots)),
@@ -63,7 +89,8 @@ def main() -> None:
             "0.30 s",
         ),
     ]
-    print(f"{'what, 10^5 points':28}{'seconds':>10}  {'baseline':24}", end="")
+    rows += signatures(rng)
+    print(f"{'what (10^5 points)':28}{'seconds':>10}  {'baseline':24}", end="")
     print(f"{'seconds':>10}{'ratio':>8}  mark")
     for what, took, base, base_took, mark in rows:
         print(f"{what:28}{took:10.4f}  {base:24}{base_took:10.4f}", end="")

@@ -111,6 +111,7 @@ def test_another_reference_surface_wins_over_a_free_constant():
     found = read(where(), -0.15 + noise(), references={"the flow line": -0.15})
     assert found.kind is Kind.REFERENCE
     assert "fit the flow line instead" in found.reason
+    assert "each rod setting" in found.next_shot.sentence
     varying = np.linspace(0.1, 0.3, 30)
     under = read(where(), varying + noise(), references={"the slab": varying})
     assert under.kind is Kind.REFERENCE

@@ -57,6 +57,17 @@ def test_honest_shots_show_nothing_and_say_what_would_have_been_seen():
     assert 0.004 < found.would_see_m < 0.03
 
 
+def test_honest_setups_are_accused_no_more_often_than_odds_of_thirty_to_one():
+    rng, accused = np.random.default_rng(21), 0
+    for seed in range(150):
+        design = stakes(25, seed=seed)
+        turned = rng.normal(0, 10 * SECOND) * across(design)
+        shots = design + rng.normal(0, 0.003, 2) + turned
+        shots += rng.normal(0, 0.004, design.shape)
+        accused += read(design, shots, tolerance_m=1e-6).verdict is not Verdict.PASS
+    assert accused <= 3
+
+
 def test_a_prism_constant_is_read_with_its_size_and_covariance():
     design = stakes(25)
     found = read(design, noisy(design + 0.034 * radial(design)))
