@@ -1,4 +1,4 @@
-"""Precision of the three ways that need only two marks, many pairs at once.
+"""Precision of the ways that need only two marks, many pairs at once.
 
 All arrays broadcast. Points (…, 2) metres; covariances (…, 3) of EE, EN, NN in m².
 Each function answers the larger standard half-axis squared (m²) and the number by which
@@ -11,7 +11,7 @@ from __future__ import annotations
 import numpy as np
 
 from geometry.checked import Array
-from geometry.precision import RightAngle, StringLine, Tape
+from geometry.precision import RightAngle, StringLine, Tape, TotalStation
 
 
 def ties(
@@ -69,6 +69,30 @@ def right_angle(
     nn = nn + tape.sd_m**2 + (1e-6 * tape.ppm * o) ** 2
     un = (1 - f) * (aun + g * ann) - g * f * bnn
     return _larger(uu, un, nn), f, o
+
+
+def polar(
+    p: Array, s: Array, b: Array, cs: Array, cb: Array, instrument: TotalStation
+) -> Array:
+    """Angle and distance from occupied `s`, oriented on `b`: the variance."""
+    back, ray = b - s, p - s
+    reach = np.maximum(_dot(back, back), 1e-12)[..., None]
+    g = _right(back) / reach
+    v = _right(ray)
+    here, there = instrument.station_centring_m**2, instrument.backsight_centring_m**2
+    see, sen, snn = cs[..., 0] + here, cs[..., 1], cs[..., 2] + here
+    ge, gn = g[..., 0], g[..., 1]
+    drift_e, drift_n = -(see * ge + sen * gn), -(sen * ge + snn * gn)
+    across = instrument.angle_sd_rad**2 - (ge * drift_e + gn * drift_n)
+    across = across + _along(cb, g) + there * _dot(g, g)
+    square = np.maximum(_dot(ray, ray), 1e-12)
+    along = instrument.distance_sd_m**2 / square + (1e-6 * instrument.distance_ppm) ** 2
+    e, n, ve, vn = ray[..., 0], ray[..., 1], v[..., 0], v[..., 1]
+    extra = instrument.target_centring_m**2
+    ee = see + 2 * ve * drift_e + across * ve * ve + along * e * e + extra
+    nn = snn + 2 * vn * drift_n + across * vn * vn + along * n * n + extra
+    en = sen + ve * drift_n + vn * drift_e + across * ve * vn + along * e * n
+    return _larger(ee, en, nn)
 
 
 def _unit(vector: Array) -> tuple[Array, Array]:
