@@ -6,8 +6,9 @@ variance that comes from the marks themselves; what measuring adds is in `measur
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
+from typing import ParamSpec, TypeVar
 
 import numpy as np
 
@@ -16,6 +17,9 @@ from geometry.cogo import angle_at, inverse, offsets_from_line
 from geometry.errors import GeometryError
 from stakes.models import Mark
 from stakes.record import Refused
+
+P = ParamSpec("P")
+T = TypeVar("T")
 
 
 @dataclass(frozen=True, slots=True)
@@ -108,10 +112,10 @@ def _angle_variance(at: Mark, back: Mark, fore: Mark) -> float:
     return total + float(pull @ covariance(at) @ pull)
 
 
-def _asked(compute, *given):  # type: ignore[no-untyped-def]
+def _asked(compute: Callable[P, T], *given: P.args, **more: P.kwargs) -> T:
     """Let geometry answer; its refusal becomes ours, with its three sentences."""
     try:
-        return compute(*given)
+        return compute(*given, **more)
     except GeometryError as error:
         raise refused_by(error) from error
 
