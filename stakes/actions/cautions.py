@@ -9,7 +9,7 @@ from datetime import datetime
 from stakes.actions.once import Act, follows, once
 from stakes.actions.told import short
 from stakes.kinds.cautions import (
-    CautionAcknowledged,
+    CautionRead,
     HazardFlagged,
     LocateRecorded,
     Private,
@@ -148,7 +148,7 @@ def acknowledgements(
         )
     return [
         Said(
-            fact=CautionAcknowledged(
+            fact=CautionRead(
                 sort=caution.sort,
                 words=caution.words,
                 listed=(before.view.key,),

@@ -77,8 +77,8 @@ class HazardFlagged(Fact, kw_only=True):
         return f"Hazard {state}: {self.sort}. {self.words}".strip()
 
 
-@kind("caution acknowledged")
-class CautionAcknowledged(Fact, kw_only=True):
+@kind("caution read")
+class CautionRead(Fact, kw_only=True):
     """A caution was shown to a crew before an act, and somebody said they read it."""
 
     sort: str

@@ -9,7 +9,7 @@ from uuid import UUID
 
 from shapely import Point, Polygon
 
-from stakes.kinds.cautions import CautionAcknowledged, HazardFlagged, LocateRecorded
+from stakes.kinds.cautions import CautionRead, HazardFlagged, LocateRecorded
 from stakes.models import Mark, Record, Zone
 from stakes.record import reading
 
@@ -94,9 +94,9 @@ def acknowledged(
     """The cautions this person said they had read that day, or on that visit."""
     day = at.astimezone(record.time_zone).date()
     found = set()
-    for counted in reading.entries(record, kinds=[CautionAcknowledged.KIND]):
+    for counted in reading.entries(record, kinds=[CautionRead.KIND]):
         fact = counted.fact
-        assert isinstance(fact, CautionAcknowledged)
+        assert isinstance(fact, CautionRead)
         if counted.person != person:
             continue
         same_day = counted.happened_at.astimezone(record.time_zone).date() == day
