@@ -140,6 +140,22 @@ def effects_of(
     return found
 
 
+def states_of(
+    record: Record, overruled: dict[int, int], **upto: Any
+) -> dict[UUID, standing.MarkState]:
+    """Every mark's state, folded row by row as the rows are read: nothing is kept of
+    the past but what it came to."""
+    links = EntryMark.objects.filter(record=record, **upto)
+    rows = links.order_by(
+        "happened_at", "counter", "place", "number", "id"
+    ).values_list("mark", "happened_at", "number", "effect")
+    states: dict[UUID, standing.MarkState] = defaultdict(standing.MarkState)
+    for mark, at, number, effect in rows.iterator(chunk_size=2000):
+        if number not in overruled:
+            standing.apply(states[mark], at, number, effect)
+    return dict(states)
+
+
 def _grounds(
     record: Record, marks: set[UUID], overruled: dict[int, int]
 ) -> dict[UUID, tuple[standing.MarkState, int]]:

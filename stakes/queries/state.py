@@ -12,13 +12,11 @@ from datetime import datetime
 from typing import Any
 from uuid import UUID
 
-from stakes.folds.marks import effects_of as mark_effects
-from stakes.folds.marks import plan_rows
+from stakes.folds.marks import plan_rows, states_of
 from stakes.folds.setups import effects_of as setup_effects
 from stakes.folds.setups import opened_setups
 from stakes.models import Mark, Record, Setup
 from stakes.record import reading
-from stakes.standing import marks as mark_fold
 from stakes.standing import setups as setup_fold
 from stakes.standing.marks import MarkState, StakeState, Standing, Trust
 from stakes.standing.trust import Judge, Judged, Leaning, worse
@@ -93,10 +91,7 @@ def job_state(
     if known is not None:
         upto["number__lte"] = known
     overruled = reading.corrections(record, known)
-    states = {
-        mark: mark_fold.fold(effects)
-        for mark, effects in mark_effects(record, overruled, **upto).items()
-    }
+    states = states_of(record, overruled, **upto)
     plans = plan_rows(record, overruled, at, known)
     leanings, setups = _leanings(record, overruled, upto, at, known)
     judge = Judge(states, leanings)

@@ -6,13 +6,16 @@ mark by its own entries alone; what its setup and control add is joined in `trus
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Callable, Iterable
 from dataclasses import dataclass, field
 from datetime import datetime
 from enum import StrEnum
+from functools import lru_cache
 from uuid import UUID
 
 from stakes.standing.effects import Effect
+
+Act = Callable[["MarkState", datetime, int, list[str]], None]
 
 
 class Standing(StrEnum):
@@ -154,11 +157,22 @@ def fold(effects: Iterable[Effect]) -> MarkState:
     """The state of a mark after its counting effects, given in the order of facts."""
     state = MarkState()
     for at, number, effect in effects:
-        word, *rest = effect.split(";")
-        act = _ACTS.get(word)
-        if act is not None:
-            act(state, at, number, rest)
+        apply(state, at, number, effect)
     return state
+
+
+def apply(state: MarkState, at: datetime, number: int, effect: str) -> None:
+    """Let one effect act on a mark; a whole job is folded by this, row by row."""
+    act, rest = _read(effect)
+    if act is not None:
+        act(state, at, number, rest)
+
+
+@lru_cache(maxsize=8192)
+def _read(effect: str) -> tuple[Act | None, list[str]]:
+    """Effects repeat: most stakes of a setup are set by the very same letters."""
+    word, *rest = effect.split(";")
+    return _ACTS.get(word), rest
 
 
 def _current(state: MarkState, at: datetime) -> StakeState:
@@ -305,7 +319,7 @@ def _in_doubt(stake: StakeState) -> bool:
     return any(proof.doubt_from for proof in stake.proofs(stake.components))
 
 
-_ACTS = {
+_ACTS: dict[str, Act] = {
     "plan": _plan,
     "set": _set,
     "seen": _seen,
