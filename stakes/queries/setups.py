@@ -18,7 +18,7 @@ from stakes.kinds.setups import (
     SetupRechecked,
     UsedMark,
 )
-from stakes.models import Mark, Record, Setup
+from stakes.models import Entry, Mark, Record, Setup
 from stakes.queries.gates import Leaned
 from stakes.queries.setup_checks import Stand
 from stakes.queries.state import JobState, MarkView
@@ -145,6 +145,16 @@ def opening_of(record: Record, key: UUID) -> SetupOpened:
         if isinstance(counted.fact, SetupOpened):
             return counted.fact
     raise Refused("There is no such setup on this job.", field="setup")
+
+
+def set_fact(state: JobState, view: MarkView) -> StakeSet | None:
+    """What was said when the current stake of a mark was set."""
+    number = view.stake.set_number if view.stake else None
+    if number is None:
+        return None
+    entry = Entry.objects.filter(record=state.record, number=number).first()
+    fact = reading.decoded(entry, {}).fact if entry else None
+    return fact if isinstance(fact, StakeSet) else None
 
 
 def story(state: JobState, key: UUID) -> SetupStory:
