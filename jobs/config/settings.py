@@ -9,6 +9,8 @@ import sys
 from pathlib import Path
 from urllib.parse import unquote, urlparse
 
+from django.core.exceptions import ImproperlyConfigured
+
 from jobs.config import env
 
 BASE_DIR = Path(__file__).resolve().parent.parent.parent
@@ -90,7 +92,7 @@ APPEND_SLASH = True
 DATABASE_URL = environment.text("DATABASE_URL")
 OWNER_DATABASE_URL = environment.text("LATHBOOK_OWNER_DATABASE_URL")
 if OWNER_DATABASE_URL and not DATABASE_URL:
-    raise env.ImproperlyConfigured(
+    raise ImproperlyConfigured(
         "LATHBOOK_OWNER_DATABASE_URL is set but DATABASE_URL is not. Set DATABASE_URL "
         "to the web role's address, or remove both to use the embedded database."
     )

@@ -118,7 +118,7 @@ class Plan:
         """All places the drawing must show."""
         return [
             *((m.e_m, m.n_m) for m in self.marks),
-            *(tuple(c) for z in self.zones for c in z.corners_m),  # type: ignore[misc]
+            *((c[0], c[1]) for z in self.zones for c in z.corners_m),
         ]
 
 

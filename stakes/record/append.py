@@ -255,7 +255,8 @@ class _Writing:
             )
             for matter in matters
         ]
-        for row in [*chained, *rows]:
+        placed: list[EntryMark | EntryMatter] = [*chained, *rows]
+        for row in placed:
             row.happened_at, row.counter = entry.happened_at, entry.counter
             row.place = entry.place
         self.entries.append(entry)

@@ -72,7 +72,7 @@ def corrections(record: Record, known: int | None = None) -> dict[int, int]:
         rows = rows.filter(number__lte=known)
     said = list(rows.values_list("number", "corrects", "withdraws"))
     return corrected(
-        {number: target for number, target, _ in said},
+        {number: target for number, target, _ in said if target is not None},
         {number for number, _, withdraws in said if withdraws},
     )
 
