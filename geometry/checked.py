@@ -10,6 +10,8 @@ from geometry.errors import NotFinite, OutOfRange, WrongShape
 Array = NDArray[np.float64]
 """Float64 array; shapes stand in each docstring."""
 
+SMALLEST_SIGMA_M, LARGEST_SIGMA_M = 1e-9, 1e6
+
 Flags = NDArray[np.bool_]
 Indices = NDArray[np.intp]
 
@@ -79,6 +81,35 @@ def not_negative(name: str, value: float) -> float:
     return result
 
 
+def metres(name: str, value: float) -> float:
+    """`value` as a finite number of metres, no larger than any plane coordinate."""
+    result = number(name, value)
+    if abs(result) > LARGEST_M:
+        raise OutOfRange(
+            f"{name} is larger than any plane coordinate.",
+            where=f"It is {result:g}.",
+            do="Check the unit.",
+        )
+    return result
+
+
+def length(name: str, value: float) -> float:
+    """`value` as metres greater than zero."""
+    return metres(name, positive(name, value))
+
+
+def sigma(name: str, value: float) -> float:
+    """`value` as a standard deviation that a measurement can have, in metres."""
+    result = positive(name, value)
+    if not SMALLEST_SIGMA_M <= result <= LARGEST_SIGMA_M:
+        raise OutOfRange(
+            f"{name} is no standard deviation of a measurement.",
+            where=f"It is {result:g} m.",
+            do="Give a value between a nanometre and a thousand kilometres.",
+        )
+    return result
+
+
 def covariance(name: str, values: ArrayLike, size: int = 2) -> Array:
     """`values` as a symmetric (size, size) covariance in m², not negative."""
     array = np.asarray(values, dtype=np.float64)
@@ -87,7 +118,7 @@ def covariance(name: str, values: ArrayLike, size: int = 2) -> Array:
             f"{name} must be a {size} by {size} covariance.",
             where=f"It has shape {array.shape}.",
         )
-    _finite(name, array, limit=np.inf)
+    _finite(name, array, limit=LARGEST_M**2)
     scale = max(float(np.abs(array).max()), 1e-30)
     if float(np.abs(array - array.T).max()) > 1e-9 * scale:
         raise OutOfRange(f"{name} is not symmetric.", do="Give one covariance matrix.")

@@ -47,6 +47,7 @@ def repeats(
     random = checked.not_negative("random uncertainty", random_uncertainty)
     fixed = checked.not_negative("fixed uncertainty", fixed_uncertainty)
     k = checked.positive("factor", factor)
+    checked.metres("the largest of them", max(size, limit, random, fixed))
     margin = abs(limit - size)
     towards = Verdict.PASS if size <= limit else Verdict.FAIL
     if margin <= SLACK:

@@ -135,7 +135,7 @@ def solved(rows: Array, sigma: Array) -> tuple[Array, Array, Array]:
 
     Raises Singular when the sights do not fix position and orientation.
     """
-    weight = np.linalg.inv(sigma)
+    weight = _inverse(sigma)
     normal = rows.T @ weight @ rows
     scale = 1.0 / np.sqrt(np.diag(normal))
     even = normal * np.outer(scale, scale)
@@ -148,6 +148,16 @@ def solved(rows: Array, sigma: Array) -> tuple[Array, Array, Array]:
     covariance = np.linalg.inv(even) * np.outer(scale, scale)
     gain = covariance @ rows.T @ weight
     return covariance, gain, weight - weight @ rows @ gain
+
+
+def _inverse(sigma: Array) -> Array:
+    try:
+        return np.asarray(np.linalg.inv(sigma))
+    except np.linalg.LinAlgError as error:
+        raise Singular(
+            "The sights have no uncertainty to weigh them by.",
+            do="Give instrument and marks standard deviations above zero.",
+        ) from error
 
 
 def _smallest(residual: Array, mark: int) -> float:

@@ -58,7 +58,7 @@ def curvature_refraction(distance_m: float, refraction: float = REFRACTION) -> f
     >>> round(curvature_refraction(1000.0, 0.14), 4)
     0.0675
     """
-    d = checked.number("distance", distance_m)
+    d = checked.metres("distance", distance_m)
     return (1 - checked.number("refraction", refraction)) * d * d / (2 * EARTH_RADIUS_M)
 
 
@@ -82,7 +82,7 @@ def trigonometric_height(
     ...       TotalStation()).difference_m, 4)
     17.5655
     """
-    s = checked.positive("slope distance", slope_m)
+    s = checked.length("slope distance", slope_m)
     z = checked.number("zenith angle", zenith_rad)
     if not 0 < z < math.pi:
         raise OutOfRange(
@@ -90,8 +90,8 @@ def trigonometric_height(
             where=f"It is {math.degrees(z):g} degrees.",
             do="Reduce face-right readings first.",
         )
-    hi = checked.number("instrument height", instrument_height_m)
-    ht = checked.number("target height", target_height_m)
+    hi = checked.metres("instrument height", instrument_height_m)
+    ht = checked.metres("target height", target_height_m)
     flat, rise = s * math.sin(z), s * math.cos(z)
     correction = curvature_refraction(flat, refraction)
     variance = (
@@ -109,7 +109,7 @@ def level_run_variance(length_m: float, level: Level) -> float:
     >>> round(1000 * math.sqrt(level_run_variance(4000.0, Level())), 3)
     4.0
     """
-    length = checked.not_negative("length", length_m)
+    length = checked.metres("length", checked.not_negative("length", length_m))
     return level.per_km_sd_m**2 * length / 1000.0
 
 
@@ -122,8 +122,8 @@ def one_setup_variance(backsight_m: float, foresight_m: float, level: Level) -> 
     >>> one_setup_variance(30, 30, Level()) < one_setup_variance(10, 50, Level())
     True
     """
-    b = checked.not_negative("backsight", backsight_m)
-    f = checked.not_negative("foresight", foresight_m)
+    b = checked.metres("backsight", checked.not_negative("backsight", backsight_m))
+    f = checked.metres("foresight", checked.not_negative("foresight", foresight_m))
     return 2 * level.reading_sd_m**2 + (level.collimation_rad * (b - f)) ** 2
 
 
@@ -148,8 +148,9 @@ def combined_height(
             "Heights and variances must be equally many.",
             where=f"There are {len(h)} and {len(v)}.",
         )
-    if float(v.min()) <= 0:
-        raise OutOfRange("variances must be greater than zero.")
+    for height, variance in zip(h, v, strict=True):
+        checked.metres("height", height)
+        checked.sigma("root of a variance", math.sqrt(max(variance, 0.0)))
     weight = 1.0 / v
     origin = float(h[0])
     mean = origin + float(weight @ (h - origin) / weight.sum())

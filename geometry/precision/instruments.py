@@ -9,11 +9,14 @@ by sqrt 2.
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
 
 from geometry import checked
+from geometry.errors import OutOfRange
 
 ARC_SECOND = math.pi / 648000
+
+LARGEST_FIGURE = 1e6
 
 
 @dataclass(frozen=True, slots=True)
@@ -34,6 +37,9 @@ class TotalStation:
     target_centring_m: float = 0.002
     height_sd_m: float = 0.001
     distance_m: float = 300.0
+
+    def __post_init__(self) -> None:
+        _sound(self)
 
     @property
     def angle_sd_rad(self) -> float:
@@ -58,6 +64,9 @@ class Tape:
     ppm: float = 50.0
     length_m: float = 30.0
 
+    def __post_init__(self) -> None:
+        _sound(self)
+
     def variance(self, distance_m: float) -> float:
         """Variance in m² of a taped distance."""
         return self.sd_m**2 + (1e-6 * self.ppm * distance_m) ** 2
@@ -70,12 +79,18 @@ class StringLine:
     sd_m: float = 0.001
     length_m: float = 60.0
 
+    def __post_init__(self) -> None:
+        _sound(self)
+
 
 @dataclass(frozen=True, slots=True)
 class RightAngle:
     """How well a right angle is turned: 150" by a 3-4-5 tape, 60" optical square."""
 
     sd_rad: float = 150 * ARC_SECOND
+
+    def __post_init__(self) -> None:
+        _sound(self)
 
 
 @dataclass(frozen=True, slots=True)
@@ -88,6 +103,9 @@ class Level:
     collimation_rad: float = 1e-5
     sight_m: float = 60.0
 
+    def __post_init__(self) -> None:
+        _sound(self)
+
 
 def one_face(two_face_sd_rad: float) -> float:
     """Sigma of a direction in one face, from the brochure's two-face figure.
@@ -96,3 +114,12 @@ def one_face(two_face_sd_rad: float) -> float:
     7.0711
     """
     return math.sqrt(2) * checked.positive("two-face sigma", two_face_sd_rad)
+
+
+def _sound(instrument: TotalStation | Tape | StringLine | RightAngle | Level) -> None:
+    """Every figure is finite, not negative and not absurd; else OutOfRange."""
+    for part in fields(instrument):
+        name = f"{part.name} of a {type(instrument).__name__}"
+        value = checked.not_negative(name, getattr(instrument, part.name))
+        if value > LARGEST_FIGURE:
+            raise OutOfRange(f"{name} is too large.", where=f"It is {value:g}.")

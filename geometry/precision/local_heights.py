@@ -10,7 +10,7 @@ from scipy.stats import chi2
 
 from geometry import checked
 from geometry.checked import Array
-from geometry.errors import CollinearPoints, EmptyInput, OutOfRange, WrongShape
+from geometry.errors import CollinearPoints, EmptyInput, WrongShape
 from geometry.verdicts import Verdict
 
 
@@ -59,8 +59,9 @@ def localised_heights(
     needed = 3 if tilt else 1
     if len(p) < needed:
         raise EmptyInput(f"At least {needed} marks are needed.", do="Occupy more.")
-    if float(s.min()) <= 0:
-        raise OutOfRange("sigmas must be greater than zero.")
+    for difference, sd in zip(d, s, strict=True):
+        checked.metres("difference", difference)
+        checked.sigma("sigma", sd)
     centre = p.mean(axis=0)
     rows = np.ones((len(p), 1))
     if tilt:
@@ -90,8 +91,8 @@ def local_height(
 ) -> tuple[float, float]:
     """Local height at `point` (E, N), metres, and its variance in m²."""
     offset = checked.point("point", point) - fit.centre
-    height = checked.number("satellite height", satellite_height_m)
-    sd = checked.positive("satellite sigma", satellite_sd_m)
+    height = checked.metres("satellite height", satellite_height_m)
+    sd = checked.sigma("satellite sigma", satellite_sd_m)
     row = np.concatenate([[1.0], offset])[: len(fit.parameters)]
     variance = float(row @ fit.covariance @ row) + sd * sd
     return height + float(row @ fit.parameters), variance

@@ -84,7 +84,7 @@ def localised(
     [55.0, 55.0]
     """
     sat, loc, centre_s, centre_l = _pairs(satellite, control)
-    sd = checked.positive("satellite sigma", satellite_sd_m)
+    sd = checked.sigma("satellite sigma", satellite_sd_m)
     sigma = joint_of(len(sat), control_covariances) + sd * sd * np.eye(2 * len(sat))
     turn, shift = math.atan2(*_turn(sat, loc)), np.zeros(2)
     for _ in range(8):
@@ -122,7 +122,7 @@ def local_point(
     fit: Localisation, satellite: ArrayLike, satellite_sd_m: float
 ) -> LocalPoint:
     """A satellite position (E, N) in the local system, with its covariance."""
-    sd = checked.positive("satellite sigma", satellite_sd_m)
+    sd = checked.sigma("satellite sigma", satellite_sd_m)
     vector = _rotated(
         checked.point("satellite", satellite) - fit.satellite_centre, fit.turn_rad
     )

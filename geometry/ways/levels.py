@@ -24,7 +24,7 @@ def levels(
     """Ways for the elevation of `target`, best first; refused ones with the reason."""
     if target.elevation_m is None:
         return []
-    checked.number(f"elevation of {target.id}", target.elevation_m)
+    checked.metres(f"elevation of {target.id}", target.elevation_m)
     place = checked.point(f"position of {target.id}", target.position)
     marks = [
         c
@@ -34,8 +34,9 @@ def levels(
         and c.id != target.id
     ]
     for mark in marks:
-        checked.number(f"elevation of {mark.id}", mark.elevation_m or 0.0)
-        checked.not_negative(f"elevation sigma of {mark.id}", mark.elevation_sd_m)
+        checked.metres(f"elevation of {mark.id}", mark.elevation_m or 0.0)
+        sd = checked.not_negative(f"elevation sigma of {mark.id}", mark.elevation_sd_m)
+        checked.metres(f"elevation sigma of {mark.id}", sd)
     marks.sort(key=lambda m: math.dist(place, m.position))
     good = [m for m in marks if m.usable and m.elevation_usable]
     bad = [m for m in marks if not (m.usable and m.elevation_usable)]

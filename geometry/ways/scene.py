@@ -21,6 +21,9 @@ from geometry.ways.survivors import Limits, Sort, Survivor, Target, Tools
 NEAREST_M = 0.05
 """A mark nearer than this stands at the same place and holds nothing for it."""
 
+SHORTEST_BASE_M = 0.3
+"""Two marks nearer than this to each other give no direction."""
+
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Scene:

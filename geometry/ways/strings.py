@@ -9,7 +9,7 @@ import numpy as np
 
 from geometry.checked import Array
 from geometry.ways.draft import Draft, singular
-from geometry.ways.scene import Scene
+from geometry.ways.scene import SHORTEST_BASE_M, Scene
 from geometry.ways.way import Caution, Kind, Number
 
 LINES = 8
@@ -65,6 +65,7 @@ def _lines(scene: Scene, near: list[int]) -> list[tuple[int, int, float]]:
     own = scene.own()
     low, high = scene.limits.between
     fit = (beside <= scene.limits.beside_m) & (share >= low) & (share <= high)
+    fit &= length > SHORTEST_BASE_M
     across = (1 - share) ** 2 * _across(own[a], n) + share**2 * _across(own[b], n)
     order = np.argsort(across, kind="stable")
     rows = [(int(a[i]), int(b[i]), float(across[i])) for i in order if fit[i]]

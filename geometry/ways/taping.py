@@ -9,14 +9,11 @@ import numpy as np
 from geometry.checked import Array, Flags, Indices
 from geometry.ways import pairs
 from geometry.ways.draft import Draft, singular
-from geometry.ways.scene import Scene
+from geometry.ways.scene import SHORTEST_BASE_M, Scene
 from geometry.ways.way import Caution, Kind, Number
 
 MOST = 5
 """Pairs per way that are worked out in full: the best by precision."""
-
-SHORTEST_BASE_M = 0.3
-"""Two marks nearer than this give no direction."""
 
 
 def taped_ties(scene: Scene) -> list[Draft]:
