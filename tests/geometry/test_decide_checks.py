@@ -209,7 +209,7 @@ def test_no_check_sees_no_move():
 @given(st.lists(st.tuples(st.floats(), st.floats()), max_size=4), st.floats())
 def test_any_gradients_give_an_answer_or_a_named_error(gradients, variance):
     try:
-        answer = smallest_move(gradients, variance * np.eye(len(gradients)))
+        answer = smallest_move(gradients, np.diag([variance] * len(gradients)))
     except GeometryError as error:
         assert str(error)
     else:

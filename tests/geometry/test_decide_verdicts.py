@@ -131,7 +131,8 @@ def test_the_conformance_probability_agrees_with_the_worked_values():
 @given(st.floats(0, 30), st.floats(0.5, 20), st.floats(0.05, 10))
 def test_a_round_covariance_gives_the_noncentral_chi_square(r, t, s):
     expected = ncx2.cdf((t / s) ** 2, 2, (r / s) ** 2)
-    if math.isfinite(expected):
+    # scipy loses digits where the noncentrality is next to nothing.
+    if math.isfinite(expected) and r / s > 1e-3:
         got = conformance_radial((0.6 * r, 0.8 * r), t, s * s * np.eye(2))
         assert got == pytest.approx(expected, abs=2e-7)
 
@@ -235,3 +236,25 @@ def test_any_input_gives_a_decision_or_a_named_error(d, t, u, rule):
 
 def test_the_guard_factor_is_the_quantile_of_the_normal_distribution():
     assert pytest.approx(norm.ppf(0.95), abs=1e-12) == FACTOR_ONE_SIDED_95
+
+
+@given(*(st.floats() for _ in range(4)))
+def test_any_repeats_are_counted_or_a_named_error(d, t, s, fixed):
+    try:
+        answer = repeats(d, t, s, fixed)
+    except GeometryError as error:
+        assert str(error)
+    else:
+        assert answer.total is None or answer.total >= 1
+
+
+@given(*(st.floats() for _ in range(5)))
+def test_any_probability_is_a_probability_or_a_named_error(d, e, t, u, v):
+    for call in (
+        lambda: conformance(d, t, u),
+        lambda: conformance_radial((d, e), t, np.diag([u, v])),
+    ):
+        try:
+            assert 0 <= call() <= 1
+        except GeometryError as error:
+            assert str(error)

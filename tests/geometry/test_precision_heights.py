@@ -129,3 +129,25 @@ def test_any_sight_gives_a_height_or_a_named_error(s, z, hi, ht):
         assert str(error)
     else:
         assert not math.isnan(got.difference_m)
+
+
+@given(st.lists(st.tuples(st.floats(), st.floats()), max_size=4))
+def test_any_heights_are_combined_or_a_named_error(rows):
+    try:
+        got = combined_height([r[0] for r in rows], [r[1] for r in rows])
+    except GeometryError as error:
+        assert str(error)
+    else:
+        assert math.isfinite(got.height_m) and math.isfinite(got.misfit)
+
+
+@given(st.floats(), st.floats(), st.floats())
+def test_an_instrument_with_impossible_figures_is_named(a, b, c):
+    try:
+        tool = TotalStation(a, b, c)
+        level = Level(a, b, c)
+    except GeometryError as error:
+        assert str(error)
+    else:
+        assert math.isfinite(tool.distance_variance(100.0))
+        assert math.isfinite(one_setup_variance(10, 50, level))
