@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from stakes.models.chain import MarkChain
+from stakes.models.drafts import Draft
 from stakes.models.mark import Mark, Stake
 from stakes.models.plan import Check, Direction, Question, Sheet, Zone
 from stakes.models.record import (
@@ -18,6 +19,7 @@ from stakes.models.setup import Setup
 __all__ = [
     "Check",
     "Direction",
+    "Draft",
     "Entry",
     "EntryMark",
     "EntryMatter",
