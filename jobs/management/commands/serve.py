@@ -30,7 +30,8 @@ class Command(BaseCommand):
         )
 
     def handle(self, *_: Any, **options: Any) -> None:
-        if not options["no_migrate"]:
+        # Where another role owns the tables, `migrate` is an act of its own.
+        if not options["no_migrate"] and not settings.OWNER_DATABASE_URL:
             call_command("migrate", interactive=False, verbosity=0)
         stop = threading.Event()
         signal.signal(signal.SIGTERM, lambda *_: sys.exit(0))
