@@ -1,7 +1,7 @@
 """A real browser against a real server: headless Chromium, two sizes, axe on each page.
 
 Without a browser these tests are left out and say so; where everything must run
-(LATHBOOK_TEST_EVERYTHING) a missing browser is a failure.
+(TESTS_RUN_EVERYTHING) a missing browser is a failure.
 """
 
 from __future__ import annotations
@@ -15,7 +15,7 @@ from typing import Any
 import pytest
 
 os.environ.setdefault("DJANGO_ALLOW_ASYNC_UNSAFE", "true")
-EVERYTHING = bool(os.environ.get("LATHBOOK_TEST_EVERYTHING"))
+EVERYTHING = bool(os.environ.get("TESTS_RUN_EVERYTHING"))
 CHROMIUM = shutil.which("chromium") or shutil.which("chromium-browser")
 FLAGS = [
     "--headless",

@@ -14,7 +14,7 @@ from tests.arena import Arena, arena
 pytestmark = pytest.mark.commits
 
 PROCESSES, THREADS = 4, 5
-APPENDS = 200 if os.environ.get("LATHBOOK_TEST_EVERYTHING") else 20
+APPENDS = 200 if os.environ.get("TESTS_RUN_EVERYTHING") else 20
 
 
 @pytest.fixture(scope="module")
