@@ -97,7 +97,8 @@ def measure() -> None:
         base = milliseconds(lambda page=page: client.get(f"/jobs/empty/{page}"))
         name = f"/jobs/N/{page}"
         print(
-            f"| {name} | {ms:.0f} | {base:.0f} | {ms / base:.1f} | {counts[0]} / {counts[1]} |"
+            f"| {name} | {ms:.0f} | {base:.0f} | {ms / base:.1f} "
+            f"| {counts[0]} / {counts[1]} |"
         )
     state = job_state(large)
     plan = plan_of(state, "plan")
