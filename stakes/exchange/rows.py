@@ -88,8 +88,8 @@ class Row(msgspec.Struct, frozen=True, kw_only=True):
 def to_data(rows: Sequence[Row]) -> list[dict[str, Any]]:
     """Rows as plain data for a draft; what is empty is left out."""
     return [
-        {k: v for k, v in msgspec.to_builtins(r).items() if v not in ("", None, [])}
-        for r in rows
+        {k: v for k, v in row.items() if v not in ("", None, [])}
+        for row in msgspec.json.decode(msgspec.json.encode(list(rows)))
     ]
 
 
