@@ -8,14 +8,14 @@ origin, for seven-digit coordinates lose their decimals in a renderer.
 from __future__ import annotations
 
 import math
-from collections.abc import Iterable, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 from stakes.drawings.colours import COLOURS
+from stakes.drawings.frame import Frame, Point
 from stakes.drawings.signs import sentence, symbol_id, symbols
-from stakes.drawings.svg import document, group, number, path, tag, words
-
-Point = tuple[float, float]
+from stakes.drawings.svg import document, group, number, tag, words
+from stakes.drawings.zones import DrawnZone, hatching, in_order, zone
 
 MOST_LABELS = 500
 """More labels than this are neither readable nor quick to move."""
@@ -39,17 +39,6 @@ class DrawnMark:
 
 
 @dataclass(frozen=True, slots=True)
-class DrawnZone:
-    """A polygon or line on the plan, its corners as (E, N) in metres."""
-
-    corners_m: Sequence[Point]
-    sort: str
-    name: str
-    closed: bool = True
-    words: str = ""
-
-
-@dataclass(frozen=True, slots=True)
 class Ray:
     """What the surveyor projects: a line held, a way back; dashed when it checks."""
 
@@ -66,39 +55,6 @@ class DrawnEllipse:
     semi_minor_m: float
     azimuth_rad: float
     magnified: float = 1.0
-
-
-@dataclass(frozen=True, slots=True)
-class Frame:
-    """From metres to the drawing: `scale` units a metre, northing up."""
-
-    left_m: float
-    top_m: float
-    width_m: float
-    height_m: float
-    scale: float
-
-    @classmethod
-    def around(cls, points: Iterable[Point], width: float = 960.0) -> Frame:
-        """A frame that shows all the points with some room about them."""
-        seen = list(points) or [(0.0, 0.0), (50.0, 50.0)]
-        east, north = [p[0] for p in seen], [p[1] for p in seen]
-        span = max(max(east) - min(east), max(north) - min(north), 5.0)
-        room = 0.07 * span
-        w = max(max(east) - min(east), 0.4 * span) + 2 * room
-        h = max(max(north) - min(north), 0.4 * span) + 2 * room
-        middle_e, middle_n = (max(east) + min(east)) / 2, (max(north) + min(north)) / 2
-        return cls(middle_e - w / 2, middle_n + h / 2, w, h, width / w)
-
-    def xy(self, point: Point) -> Point:
-        return (
-            (point[0] - self.left_m) * self.scale,
-            (self.top_m - point[1]) * self.scale,
-        )
-
-    @property
-    def size(self) -> Point:
-        return self.width_m * self.scale, self.height_m * self.scale
 
 
 @dataclass(frozen=True, slots=True)
@@ -133,13 +89,13 @@ def draw(
         symbols(
             prefix, ((m.purpose, m.standing, m.trust, m.carries) for m in plan.marks)
         ),
-        _hatching(prefix),
+        hatching(prefix),
     ]
     if standalone:
         parts.append(tag("rect", width=wide, height=high, fill=COLOURS["paper"]))
     parts += [
         _grid(frame, plan.unit_m),
-        group(*(_zone(frame, zone, prefix) for zone in _in_order(plan.zones))),
+        group(*(zone(frame, one, prefix) for one in in_order(plan.zones))),
         group(*(_ray(frame, ray) for ray in plan.rays)),
         group(*(_ellipse(frame, e) for e in plan.ellipses)),
         _marks(frame, plan.marks, prefix),
@@ -159,9 +115,8 @@ def draw(
 
 def _marks(frame: Frame, marks: Sequence[DrawnMark], prefix: str) -> str:
     labelled = set(_labelled(frame, marks))
-    return group(
-        *(_mark(frame, mark, prefix, i in labelled) for i, mark in enumerate(marks))
-    )
+    drawn = (_mark(frame, mark, prefix, i in labelled) for i, mark in enumerate(marks))
+    return group(*drawn, ink="ink")
 
 
 def _labelled(frame: Frame, marks: Sequence[DrawnMark]) -> list[int]:
@@ -222,89 +177,11 @@ def _label(x: float, y: float, text: str) -> str:
         x=x,
         y=y,
         font_weight="600",
-        fill=COLOURS["ink"],
+        fill="currentColor",
         stroke=COLOURS["paper"],
         stroke_width=3,
         paint_order="stroke",
-        data_ink_fill="ink",
-        data_paper="stroke",
-    )
-
-
-_DRAWN_FIRST = ("property", "setback", "haul road", "excavation", "keep-out")
-
-_STYLES: dict[str, dict[str, str | float | None]] = {
-    "footprint": {
-        "stroke": COLOURS["ink"],
-        "stroke_width": 2.4,
-        "fill": COLOURS["paper"],
-    },
-    "excavation": {"stroke": COLOURS["limit"], "stroke_width": 1.2},
-    "haul road": {"stroke": COLOURS["retired"], "fill": COLOURS["haul-road"]},
-    "keep-out": {"stroke": COLOURS["disturbed"], "stroke_width": 1.2},
-    "property": {"stroke": COLOURS["quiet"], "stroke_width": 1.6},
-    "setback": {"stroke": COLOURS["quiet"], "stroke_width": 1},
-    "line": {"stroke": COLOURS["pink"], "stroke_width": 1},
-    "obstacle": {"stroke": COLOURS["quiet"], "fill": COLOURS["grid"]},
-}
-_DASHES = {
-    "excavation": "7 4",
-    "haul road": "2 4",
-    "keep-out": "10 4",
-    "property": "14 4 3 4",
-    "setback": "6 4",
-    "line": "12 3 3 3",
-}
-
-
-def _in_order(zones: Sequence[DrawnZone]) -> list[DrawnZone]:
-    """Ground before buildings, so that nothing that matters is covered."""
-
-    def place(zone: DrawnZone) -> int:
-        known = zone.sort in _DRAWN_FIRST
-        return _DRAWN_FIRST.index(zone.sort) if known else len(_DRAWN_FIRST)
-
-    return sorted(zones, key=place)
-
-
-def _zone(frame: Frame, zone: DrawnZone, prefix: str) -> str:
-    corners = [frame.xy((c[0], c[1])) for c in zone.corners_m]
-    style = {"fill": "none", "stroke": COLOURS["quiet"], **_STYLES.get(zone.sort, {})}
-    if zone.sort in ("excavation", "keep-out") and zone.closed:
-        style["fill"] = f"url(#{prefix}-{zone.sort})"
-    if not zone.closed:
-        style["fill"] = "none"
-    outline = tag(
-        "path",
-        d=path(corners, zone.closed),
-        stroke_dasharray=_DASHES.get(zone.sort),
-        **style,
-    )
-    return tag(
-        "g",
-        words("title", f"{zone.sort} {zone.name}"),
-        outline,
-        _zone_name(corners, zone),
-        class_="zone",
-        data_sort=zone.sort,
-    )
-
-
-def _zone_name(corners: Sequence[Point], zone: DrawnZone) -> str:
-    x = sum(c[0] for c in corners) / len(corners)
-    y = sum(c[1] for c in corners) / len(corners)
-    if zone.sort in ("excavation", "property", "setback", "line"):
-        # Named at an edge: the middle belongs to the building.
-        x, y = corners[0][0] + 6, corners[0][1] + 14
-    said = zone.words or zone.name
-    return words(
-        "text",
-        said,
-        x=x,
-        y=y,
-        font_size=11,
-        fill=COLOURS["quiet"],
-        data_ink_fill="quiet",
+        data_halo="paper",
     )
 
 
@@ -337,23 +214,6 @@ def _ellipse(frame: Frame, e: DrawnEllipse) -> str:
         fill_opacity=0.15,
         stroke=COLOURS["pink"],
         stroke_width=1.5,
-    )
-
-
-def _hatching(prefix: str) -> str:
-    return tag(
-        "defs",
-        *(
-            tag(
-                "pattern",
-                tag("path", d="M0,9L9,0", stroke=COLOURS[ink], stroke_width=0.7),
-                id=f"{prefix}-{sort}",
-                width=9,
-                height=9,
-                patternUnits="userSpaceOnUse",
-            )
-            for sort, ink in (("excavation", "limit"), ("keep-out", "disturbed"))
-        ),
     )
 
 

@@ -27,11 +27,12 @@ class Moment:
 
 
 def timeline(moments: Sequence[Moment], label: str) -> str:
-    """The line with a dot for each entry; a late one trails to when it was recorded."""
+    """The line with a dot for each entry; a late one trails towards when it was
+    recorded, at most to the end of the line."""
     if not moments:
         return ""
     start = min(m.at for m in moments)
-    end = max(max(m.at, m.recorded_at) if m.late else m.at for m in moments)
+    end = max(m.at for m in moments)
     span = max((end - start).total_seconds(), 1.0)
 
     def x(at: datetime) -> float:
@@ -46,7 +47,7 @@ def timeline(moments: Sequence[Moment], label: str) -> str:
             stroke=COLOURS["ink"],
             data_ink="ink",
         ),
-        group(*(_dot(m, x(m.at), x(m.recorded_at), middle) for m in moments)),
+        group(*(_dot(m, x(m.at), x(min(m.recorded_at, end)), middle) for m in moments)),
         _ends(start, end),
         box=(0, 0, WIDTH, HEIGHT),
         class_="life",
