@@ -5,7 +5,8 @@ from __future__ import annotations
 from collections.abc import Callable, Iterable
 from uuid import UUID
 
-from stakes.drawings.plan import DrawnMark, DrawnZone, Plan
+from stakes.drawings.plan import DrawnMark, Plan
+from stakes.drawings.zones import DrawnZone
 from stakes.models import Record, Zone
 from stakes.queries.state import JobState, MarkView
 

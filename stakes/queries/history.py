@@ -34,6 +34,16 @@ class Line:
         return self.said.counts
 
     @property
+    def tone(self) -> str:
+        """The colour of its dot: what it did to the mark."""
+        if self.verdict == "fail":
+            return "failed"
+        if self.verdict == "pass":
+            return "checked"
+        tones = {"set": "not checked", "destroyed": "gone", "superseded": "superseded"}
+        return tones.get(self.said.kind, "")
+
+    @property
     def verdict(self) -> str:
         judgement = getattr(self.said.fact, "judgement", None)
         return judgement.verdict if judgement else ""

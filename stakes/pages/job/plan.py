@@ -10,10 +10,10 @@ from django.urls import reverse
 
 from stakes.can import Can, needs
 from stakes.drawings.plan import draw
-from stakes.drawings.signs import sign_svg
+from stakes.drawings.signs import sentence, sign_svg
 from stakes.pages.moment import Moment, moment_of
 from stakes.queries.drawing import in_order, plan_of
-from stakes.queries.state import JobState, job_state
+from stakes.queries.state import JobState, MarkView, job_state
 from stakes.record import Refused
 
 
@@ -66,20 +66,21 @@ def _links(job: str, moment: Moment):
     return href
 
 
-def _care(state: JobState) -> list[tuple[str, list]]:
+def _care(state: JobState) -> list[tuple[str, str, list[MarkView]]]:
     """What needs somebody's care, worst first; each matter with its marks."""
     views = in_order(state.marks.values())
+    doubtful = ("in question", "failed")
     matters = [
-        ("On hold, do not build from these", [v for v in views if v.held_back]),
-        (
-            "In question or failed",
-            [v for v in views if v.trust.trust in ("in question", "failed")],
-        ),
-        ("Gone", [v for v in views if v.standing == "gone"]),
-        ("Disturbed", [v for v in views if v.standing == "disturbed"]),
-        ("Old stake left beside the new one", [v for v in views if v.state.doubled]),
+        ("On hold, do not build from these", "held", lambda v: v.held_back),
+        ("In question or failed", "in question", lambda v: v.trust.trust in doubtful),
+        ("Gone", "gone", lambda v: v.standing == "gone"),
+        ("Disturbed", "disturbed", lambda v: v.standing == "disturbed"),
+        ("Old stake left beside the new one", "superseded", lambda v: v.state.doubled),
     ]
-    return [(words, found) for words, found in matters if found]
+    found = [
+        (words, tone, [v for v in views if is_so(v)]) for words, tone, is_so in matters
+    ]
+    return [matter for matter in found if matter[2]]
 
 
 def legend(state: JobState) -> list[tuple[str, str]]:
@@ -89,12 +90,6 @@ def legend(state: JobState) -> list[tuple[str, str]]:
         for v in state.marks.values()
     }
     return [
-        (sign_svg(*combo, size=16, title=""), _words(*combo))
+        (sign_svg(*combo, size=16, title=""), sentence(*combo))
         for combo in sorted(combos)
     ]
-
-
-def _words(purpose: str, standing: str, trust: str) -> str:
-    from stakes.drawings.signs import sentence
-
-    return sentence(purpose, standing, trust)
