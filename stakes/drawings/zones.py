@@ -105,7 +105,9 @@ def _inside(corners: Sequence[Point]) -> Point:
     if len(corners) < 3:
         return corners[0]
     shape = Polygon(corners)
-    spot = shape.centroid if shape.contains(shape.centroid) else polylabel(shape, 4.0)
+    if not shape.is_valid or shape.area == 0:
+        return corners[0]
+    spot = polylabel(shape, 4.0)
     return float(spot.x), float(spot.y)
 
 
