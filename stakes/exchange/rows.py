@@ -102,11 +102,16 @@ def read_row(
     unit: Unit,
     row: int,
     basis: Sequence[UUID] = (),
+    *,
+    decimal_comma: bool = False,
 ) -> tuple[Row | None, list[Complaint]]:
     """The row that was written, and what is wrong with it; None when it cannot stand."""
     wrong: list[Complaint] = []
     texts = {name: _text(written, name, row, wrong) for name in LONGEST}
-    lengths = {name: _length(written, name, unit, row, wrong) for name in LENGTHS}
+    lengths = {
+        name: _length(written, name, unit, row, wrong, decimal_comma)
+        for name in LENGTHS
+    }
     purpose = _choice(written, "purpose", Purpose, "stake", row, wrong)
     carries = _carries(written, lengths, purpose, row, wrong)
     if not texts["label"]:
@@ -158,12 +163,13 @@ def _length(
     unit: Unit,
     row: int,
     wrong: list[Complaint],
+    decimal_comma: bool,
 ) -> Measured | None:
     text = str(written.get(name, "")).strip()
     if not text:
         return None
     try:
-        return Measured.of(Length.parse(text[:60], unit))
+        return Measured.of(Length.parse(text[:60], unit, decimal_comma=decimal_comma))
     except GeometryError as error:
         wrong.append(Complaint(row, name, f"The {name} cannot be read: {error}"))
         return None
