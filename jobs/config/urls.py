@@ -17,4 +17,5 @@ urlpatterns = [
     ),
     path("", include("jobs.urls")),
     path("jobs/<str:job>/", include("stakes.urls")),
+    path("field/<str:job>/", include("stakes.urls.field")),
 ]

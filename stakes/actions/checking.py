@@ -19,7 +19,8 @@ from stakes.queries import expected, judging, measuring, setups, taping
 from stakes.queries.before_setting import mark_called
 from stakes.queries.means import check_means, worth
 from stakes.queries.setup_checks import read_angle
-from stakes.queries.state import JobState, MarkView, job_state
+from stakes.queries.state import JobState, MarkView
+from stakes.queries.state_then import state_then
 from stakes.queries.taping import Taped
 from stakes.queries.tolerance import ToleranceClass, class_of, classes_of
 from stakes.record import By, Known, Refused, Said, append
@@ -104,10 +105,11 @@ def check_stakes(
     check = follows(key, "check")
 
     def do(act: Act) -> list[Entry]:
-        state = job_state(record, at=at)
+        row = setups.setup_called(record, setup) if setup else None
+        leans = [uuid.UUID(mark) for mark in row.bears_on] if row else []
+        state = state_then(record, at, [*marks, *leans])
         views = _views(state, sort, marks)
         judged, others = _apart(sort, views)
-        row = setups.setup_called(record, setup) if setup else None
         used = measuring.METHODS[row.sort] if row else method
         classes = classes_of(record, at)
         made = _Check(

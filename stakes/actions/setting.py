@@ -18,7 +18,8 @@ from stakes.models import Entry, Mark, Record
 from stakes.queries import labels, measuring
 from stakes.queries.before_setting import before_setting
 from stakes.queries.gates import Gate
-from stakes.queries.state import JobState, MarkView, job_state
+from stakes.queries.state import JobState, MarkView
+from stakes.queries.state_then import state_then
 from stakes.queries.tolerance import class_of, classes_of
 from stakes.record import By, Known, Refused, Said, append
 from stakes.record.lengths import Measured
@@ -74,7 +75,7 @@ def set_stake(
     asked = {k: v for k, v in locals().items() if k not in ("record", "by", "key")}
 
     def do(act: Act) -> list[Entry]:
-        state = job_state(record, at=at)
+        state = state_then(record, at, [mark])
         before = before_setting(
             state,
             mark,

@@ -21,7 +21,8 @@ from stakes.models import Entry, Record
 from stakes.queries import gates, setup_checks, setups
 from stakes.queries.judging import as_measured
 from stakes.queries.setup_checks import CheckMade, Sight
-from stakes.queries.state import JobState, job_state
+from stakes.queries.state import JobState
+from stakes.queries.state_then import state_then
 from stakes.record import By, Known, Refused, Said, append
 from stakes.record.lengths import Measured
 
@@ -70,7 +71,8 @@ def open_setup(
     asked = {k: v for k, v in locals().items() if k not in ("record", "by", "key")}
 
     def do(act: Act) -> list[Entry]:
-        state = job_state(record, at=at)
+        wanted = [u.mark for u in used] + [c.mark for c in checks]
+        state = state_then(record, at, [*wanted, *(s.mark for s in sights)])
         named = _used(state, sort, used, sights)
         where = None if station is None else (station[1].metres, station[0].metres)
         stand = setups.stand(state, sort, named, where, [c.mark for c in checks], at)
@@ -272,7 +274,8 @@ def _later_checks(
             do="Give the time of the check.",
             field="at",
         )
-    state = job_state(record, at=at)
     opened = setups.opening_of(record, setup)
+    wanted = [u.mark for u in opened.used] + [c.mark for c in checks]
+    state = state_then(record, at, wanted)
     stand = setups.stand_of(state, opened, [c.mark for c in checks], at)
     return setup_checks.checks_of(stand, checks, closing=closing)

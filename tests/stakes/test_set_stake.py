@@ -323,3 +323,16 @@ def test_a_remark_stays_outside_the_hashed_body(job) -> None:
     entry = put(job, remark="ask for Zed at the gate")
     assert "Zed" not in entry.body
     assert record.entries.filter(body__contains="Zed").count() == 0
+
+
+def test_paper_from_before_the_plan_was_keyed_is_not_refused(job) -> None:
+    record = job[0]
+    [late] = plan(record, row("201", "1", "1", carries="position"), at=after(300))
+    set_stake(
+        record=record,
+        mark=late,
+        passage=Passage(done=True),
+        by=CHIEF,
+        at=after(200),
+    )
+    assert job_state(record).marks[late].standing == "standing"

@@ -1,0 +1,3 @@
+"""What the pages of a crew ask."""
+
+from __future__ import annotations
