@@ -12,10 +12,10 @@ from uuid import UUID
 import numpy as np
 
 from geometry.units import Length
-from stakes.kinds.control import ControlMeasured, ValueAdopted
+from stakes.kinds.control import Compared, ControlMeasured, ValueAdopted
 from stakes.kinds.planning import MarksPlanned, PlannedMark
 from stakes.kinds.setups import SetupOpened
-from stakes.models import Record
+from stakes.models import Mark, Record
 from stakes.queries.drawing import in_order
 from stakes.queries.plan import decimals
 from stakes.queries.setups import GIVES_HEIGHT
@@ -301,6 +301,62 @@ def _turned(v: np.ndarray, turn_rad: float) -> np.ndarray:
     return np.array([v[0] * c + v[1] * s, -v[0] * s + v[1] * c])
 
 
-def measured_work(record: Record) -> list[Counted]:
+@dataclass(frozen=True, slots=True)
+class WorkRow:
+    """One comparison of control work, with the numbers of its marks."""
+
+    between: str
+    marks: frozenset[UUID]
+    row: Compared
+
+
+@dataclass(frozen=True, slots=True)
+class Work:
+    """Control work as it is shown."""
+
+    counted: Counted
+    fact: ControlMeasured
+    rows: Sequence[WorkRow]
+
+
+def measured_work(record: Record) -> list[Work]:
     """All control work measured so far, the last first."""
-    return reading.entries(record, kinds=[ControlMeasured.KIND])[::-1]
+    labels = dict(Mark.objects.filter(record=record).values_list("key", "label"))
+    found = []
+    for counted in reading.entries(record, kinds=[ControlMeasured.KIND])[::-1]:
+        fact = counted.fact
+        assert isinstance(fact, ControlMeasured)
+        rows = [_work_row(row, labels) for row in fact.compared]
+        found.append(Work(counted, fact, rows))
+    return found
+
+
+def _work_row(row: Compared, labels: Mapping[UUID, str]) -> WorkRow:
+    ends = [m for m in (row.from_mark, row.to_mark) if m is not None]
+    between = " to ".join(labels.get(m, "?") for m in ends)
+    return WorkRow(between, frozenset(ends), row)
+
+
+def disagreements(record: Record, work: Sequence[Work] | None = None) -> list[WorkRow]:
+    """What was measured against the record and does not agree, until one of its marks
+    gets a new value or the same is measured again and agrees."""
+    done = measured_work(record) if work is None else work
+    valued = {
+        mark: values[-1].counted.happened_at
+        for mark, values in all_values(record).items()
+        if values
+    }
+    seen: set[tuple[str, frozenset[UUID]]] = set()
+    found = []
+    for one in done:
+        for row in one.rows:
+            what = (row.row.quantity, row.marks)
+            if what in seen or row.row.verdict not in ("pass", "fail"):
+                continue
+            seen.add(what)
+            later = any(
+                valued[m] > one.counted.happened_at for m in row.marks if m in valued
+            )
+            if row.row.verdict == "fail" and not later:
+                found.append(row)
+    return found
