@@ -12,7 +12,7 @@ from shapely import Point, Polygon
 
 from geometry.units import Length
 from stakes.kinds.planning import LayoutIssued
-from stakes.models import Mark, Record, Zone
+from stakes.models import Mark, Record, Setup, Zone
 from stakes.queries import gates, held_by, locates, setups
 from stakes.queries.state import JobState, MarkView
 from stakes.record import Refused, reading
@@ -66,7 +66,7 @@ class Before:
     inherited_by: str
     cautions: tuple[Caution, ...]
     ticket: locates.Ticket | None
-    recheck_due: int | None
+    recheck_due: str
 
 
 def breaks_ground(holds: str) -> bool:
@@ -146,12 +146,12 @@ def _setup_doubt(
     return setups.doubt_of(state, setup, carries, at)
 
 
-def _due(row: object, at: datetime) -> int | None:
-    """Minutes since the setup was last found right, when that is too long ago."""
-    passed = getattr(row, "passed_at", None)
+def _due(row: Setup | None, at: datetime) -> str:
+    """How long since the setup was last found right, when that is too long."""
+    passed = row.passed_at if row else None
     if passed is None or at - passed <= setups.RECHECK_EVERY:
-        return None
-    return int((at - passed) / timedelta(minutes=1))
+        return ""
+    return setups.ago(int((at - passed) / timedelta(minutes=1)))
 
 
 def _cautions(

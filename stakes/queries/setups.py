@@ -58,6 +58,10 @@ class OpenSetup:
     def ever_passed(self) -> bool:
         return self.row.passed_at is not None
 
+    @property
+    def ago(self) -> str:
+        return ago(self.minutes)
+
 
 @dataclass(frozen=True, slots=True)
 class SetFrom:
@@ -80,12 +84,29 @@ class SetupStory:
     minutes_open: int
 
     @property
+    def open_for(self) -> str:
+        return ago(self.minutes_open)
+
+    @property
     def checks(self) -> list[tuple[Counted, SetupCheck]]:
         return [
             (counted, check)
             for counted in self.entries
             for check in getattr(counted.fact, "checks", ())
         ]
+
+
+def ago(minutes: int) -> str:
+    """A stretch of time as people say it.
+
+    >>> ago(35), ago(200), ago(3000)
+    ('35 min', '3 h 20 min', '2 days')
+    """
+    if minutes < 100:
+        return f"{minutes} min"
+    if minutes < 48 * 60:
+        return f"{minutes // 60} h {minutes % 60} min"
+    return f"{minutes // (24 * 60)} days"
 
 
 def open_setups(state: JobState, now: datetime | None = None) -> list[OpenSetup]:

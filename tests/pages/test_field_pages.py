@@ -172,6 +172,10 @@ def test_a_party_chief_goes_on_held_naming_who_and_how(field: Field) -> None:
     page = text(stopped)
     assert "No setup" in page
     assert 'name="elevation" value="499.5"' in page  # nothing typed is lost
+    back = field.post(tail, holds="paint mark", setup="", elevation="499.5", mend="yes")
+    assert back.status_code == 200
+    assert 'value="499.5"' in text(back)
+    assert field.stake("101") is None
     half = field.post(tail, holds="paint mark", setup="", authorised_by="Surveyor")
     assert half.status_code == 409
     assert "Say both who authorised it and how" in text(half)
@@ -287,7 +291,7 @@ def put(field: Field, *labels: str) -> None:
 def test_seen_undisturbed_is_one_tap_on_the_marks_page(ready: Field) -> None:
     put(ready, "101")
     page = text(ready.get(f"marks/{ready.marks['101']}/"))
-    assert "<button>Seen, looks undisturbed</button>" in page
+    assert '<button class="main">Seen, looks undisturbed</button>' in page
     done = ready.post("found/undisturbed/", mark=str(ready.marks["101"]))
     assert done.status_code == 303
     assert entries(ready.record)[-1].kind == "seen"

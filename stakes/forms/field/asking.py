@@ -185,6 +185,10 @@ class FieldForm(forms.Form):
         """Fields that few need, folded away."""
         return [f for f in self.visible_fields() if f.name in self.late]
 
+    def folded_open(self) -> bool:
+        """Whether something folded away is wrong, and must be seen."""
+        return any(field.errors for field in self.folded())
+
 
 class RemarkFields(forms.Form):
     """A remark, kept outside the hashed record, and photos."""

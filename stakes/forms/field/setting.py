@@ -152,6 +152,6 @@ def _signed(length: Measured | None, other_way: bool) -> Measured | None:
 def setup_words(setup: OpenSetup, zone: Any) -> str:
     """An open setup in a list: what it is, since when, how long since its check."""
     opened = setup.row.opened_at.astimezone(zone)  # type: ignore[union-attr]
-    ago = f"checked {setup.minutes} min ago" if setup.ever_passed else "never checked"
+    ago = f"checked {setup.ago} ago" if setup.ever_passed else "never checked"
     doubt = ", in question" if setup.doubt else ""
     return f"{setup.row.sort}, {setup.row.opened_by}, {opened:%a %H:%M}, {ago}{doubt}"

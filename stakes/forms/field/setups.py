@@ -24,6 +24,14 @@ SIGHTS = 4
 ANY = ("control", "benchmark", "foreign")
 PLANE = ("control",)
 
+ASKED_FOR = {
+    "measured": "distance elevation",
+    "angle": "direction",
+    "northing": "position",
+    "easting": "position",
+}
+"""Which number belongs to which way of checking."""
+
 SORTS = {
     "station": "total station on a mark",
     "free": "free station",
@@ -71,12 +79,26 @@ class ChecksForm(FieldForm):
                 found[f"check{n}_easting"] = LengthField("Easting measured")
         return found
 
-    def check_groups(self) -> list[list[forms.BoundField]]:
-        """The fields of each check together."""
+    def check_groups(self) -> list[list[tuple[forms.BoundField, str]]]:
+        """The fields of each check together, each with the ways of checking that it
+        belongs to; the others need not show it."""
         return [
-            [self[name] for name in self.fields if name.startswith(f"check{n}_")]
+            [
+                (self[name], ASKED_FOR.get(name.partition("_")[2], ""))
+                for name in self.fields
+                if name.startswith(f"check{n}_")
+            ]
             for n in range(1, CHECKS + 1)
         ]
+
+    def second_open(self) -> bool:
+        """Whether something was typed, or is wrong, in a check that is folded away."""
+        later = [field for group in self.check_groups()[1:] for field, _ in group]
+        return any(
+            f.errors or (self.is_bound and f.value())
+            for f in later
+            if not f.name.endswith("_by")
+        )
 
     def checks(self) -> list[CheckMade]:
         said, found = self.cleaned_data, []
@@ -144,34 +166,29 @@ class OpenForm(PassageFields, ChecksForm):
         widget=forms.Textarea(attrs={"rows": 2}),
     )
     late = ("weather", "remark", "at")
-    needs_instrument = True
+    roles: tuple[tuple[str, str], ...] = ()
+    marks: tuple[str, ...] = ()
+    heights: tuple[str, ...] = ()
+    """Which fields name marks in which role, stand with the marks, are heights."""
 
     def means(self) -> list[forms.BoundField]:
         names = ("instrument", "serial", "calibrated_on", *self.heights)
         return [self[n] for n in names if n in self.fields]
 
-    heights: tuple[str, ...] = ()
-    marks: tuple[str, ...] = ()
-
     def named(self) -> list[forms.BoundField]:
         return [self[n] for n in self.fields if n.startswith(self.marks)]
 
     def used(self) -> list[Use]:
-        raise_if = self.cleaned_data
+        said = self.cleaned_data
         return [
             Use(mark, role)
             for name, role in self.roles
-            if (mark := _key(raise_if.get(name)))
+            if (mark := _key(said.get(name)))
         ]
-
-    roles: tuple[tuple[str, str], ...] = ()
 
     def more(self) -> dict[str, Any]:
         """What this sort alone says."""
         return {n: self.cleaned_data.get(n) for n in self.heights}
-
-    def checks(self) -> list[CheckMade]:
-        return super().checks()
 
 
 class StationForm(OpenForm):

@@ -41,13 +41,14 @@ def answered(
     page of the gate, so that nothing typed is lost.
     """
     kept: list[str] = []
+    mending = "mend" in request.POST
     if form.is_bound:
         signed = KeptPhotos(form.record)
         kept = signed.read(request.POST.getlist("kept"))
         valid = form.is_valid()
         try:
             kept += photos.keep_all(form.cleaned_data.get("photos") or [])
-            if valid:
+            if valid and not mending:
                 target = do(tuple(dict.fromkeys(kept)))
                 if done:
                     messages.success(request, done)
@@ -57,7 +58,7 @@ def answered(
         except Refused as refused:
             refuse_on(form, refused)
         context |= {"kept": list(zip(kept, signed.sign(kept), strict=True))}
-    status = 422 if form.is_bound else 200
+    status = 422 if form.is_bound and not mending else 200
     return page(request, template, status, form=form, back=back, **context)
 
 
@@ -77,7 +78,7 @@ def stopped(
         (name, value)
         for name, values in request.POST.lists()
         for value in values
-        if name not in ("csrfmiddlewaretoken", "kept", *PASSAGE)
+        if name not in ("csrfmiddlewaretoken", "kept", "mend", *PASSAGE)
     ]
     carried += [("kept", text) for text in kept]
     if request.method == "GET":
@@ -88,6 +89,7 @@ def stopped(
         409 if request.method == "POST" else 200,
         gates=gates,
         hard=any(gate.hard for gate in gates),
+        typed=request.method == "POST",
         may_proceed=request.asked.can(Can.PROCEED_HELD),  # type: ignore[attr-defined]
         carried=carried,
         said={name: request.POST.get(name, "") for name in PASSAGE},

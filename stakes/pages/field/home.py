@@ -89,6 +89,7 @@ def mark(request: HttpRequest, job: str, mark: UUID) -> HttpResponse:
         plan=plan_numbers(view, state.record.length_unit),
         sign=sign_of(view, 34),
         said=state_words(view),
+        standing=view.standing in ("standing", "disturbed"),
         verbs=VERBS[1:],
         planned=planned_row(view.plan),
         fact=setups.set_fact(state, view),

@@ -105,9 +105,7 @@ def setup(request: HttpRequest, job: str, setup: UUID) -> HttpResponse:
         checks=setup_checks(story, state),
         used=[(u.role, row(state.marks[u.mark])) for u in story.opened.used],
         stakes=[(one, row(one.view)) for one in story.stakes],
-        minutes=next(
-            (s.minutes for s in open_setups(state) if s.row.key == setup), None
-        ),
+        current=next((s for s in open_setups(state) if s.row.key == setup), None),
     )
 
 

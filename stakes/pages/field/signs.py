@@ -86,14 +86,23 @@ def state_words(view: MarkView) -> str:
     """What is on the ground and what may be trusted, in one short sentence."""
     if view.standing is Standing.PLANNED and view.trust.trust is Trust.NOT_CHECKED:
         return "not set yet"
-    parts = [_ground(view)]
-    if view.trust.trust is not Trust.CHECKED or view.standing is Standing.STANDING:
-        parts.append(str(view.trust.trust))
-    if view.trust.reason:
-        parts.append(view.trust.reason)
+    parts = [_ground(view), *_trust(view)]
     if view.held_back:
         parts.append("held")
     return ", ".join(part for part in parts if part)
+
+
+def _trust(view: MarkView) -> list[str]:
+    """What may be trusted: one word for both components, or each when they differ."""
+    both = view.plan.carries == "both" and view.position != view.elevation
+    if not both:
+        return [str(view.trust.trust), view.trust.reason]
+    named = (("position", view.position), ("elevation", view.elevation))
+    said = [
+        f"{name} {judged.trust}{f' ({judged.reason})' if judged.reason else ''}"
+        for name, judged in named
+    ]
+    return [" and ".join(said)]
 
 
 def _ground(view: MarkView) -> str:

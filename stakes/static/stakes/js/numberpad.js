@@ -43,8 +43,8 @@
   const open = (input) => {
     current = input;
     pad.dataset.pad = input.id;
-    name.textContent =
-      document.querySelector(`label[for="${CSS.escape(input.id)}"]`)?.textContent.trim() ?? "";
+    const label = document.querySelector(`label[for="${CSS.escape(input.id)}"]`);
+    name.textContent = label?.firstChild?.textContent.trim() ?? "";
     dock.hidden = false;
     input.scrollIntoView({ block: "center" });
   };
@@ -58,8 +58,10 @@
     input.inputMode = "none";
   }
   document.addEventListener("focusin", (event) => {
-    if (event.target.matches?.("input[data-number]")) open(event.target);
-    else if (!dock.contains(event.target)) shut();
+    const to = event.target;
+    if (to.matches?.("input[data-number]")) open(to);
+    // Not for a button: the page would move under the thumb before the tap is done.
+    else if (to.matches?.("input, select, textarea")) shut();
   });
   // A tap on a key must not take the focus from the field.
   dock.addEventListener("pointerdown", (event) => event.preventDefault());
