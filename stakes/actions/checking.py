@@ -37,7 +37,7 @@ NEEDS: dict[str, tuple[str, ...]] = {
 }
 """The marks each sort of check names, in their order."""
 
-TAPED = frozenset({"distance", "diagonal", "line", "fit"})
+TAPED = frozenset({"distance", "diagonal", "fit"})
 """Checks whose length may be taped, with its corrections."""
 
 
@@ -247,6 +247,10 @@ def _length(
 ) -> Judgement:
     read = _given(made.asked.measured, "measured", "what was measured")
     true_m = read.metres
+    if made.sort in TAPED and true_m <= 0:
+        raise Refused(
+            "A distance is above zero.", do="Type it without a sign.", field="measured"
+        )
     if made.asked.taped is not None:
         corrected = taping.corrected(read.metres, made.asked.taped, made.unit)
         true_m, made.words = corrected.metres, list(corrected.words)

@@ -571,6 +571,9 @@ def test_each_sort_of_check_is_made_and_explains_itself(
         ({"measured": "-nan"}, "cannot be read"),
         ({"method": "guess"}, "Select a valid choice"),
         ({"rise": "50"}, "differ more in height"),
+        ({"temperature": "NaN"}, "Enter a number"),
+        ({"temperature": "900"}, "less than or equal to 160"),
+        ({"pull": "-3"}, "greater than or equal to 1"),
     ],
 )
 def test_odd_input_to_a_check_gets_a_sentence(

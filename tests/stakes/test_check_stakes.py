@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import uuid
+from decimal import Decimal
 
 import pytest
 
@@ -197,6 +198,27 @@ def test_a_slope_length_is_reduced_and_the_correction_said(job) -> None:
     assert found.judgement.verdict == "pass"
 
 
+def test_temperature_pull_and_sag_of_a_tape_are_corrected_and_said(job) -> None:
+    """60 ft at 95 °F: 6.45e-6 x 27 x 60 = +0.0104 ft (Ghilani & Wolf, from memory)."""
+    taped = Taped(temperature=Decimal(95), pull=Decimal(20), hung=True)
+    asked = Asked(measured=measured("60.00"), taped=taped)
+    found = check(job, "distance", "102 103", asked, method="tape")
+    words = {w.rsplit(" ", 2)[0]: w.split()[-2] for w in found.corrections}
+    assert words["temperature 95 °F"] == "+0.0104"
+    assert float(words["pull 20 lb"]) == pytest.approx(0.0039, abs=2e-4)
+    # -w² L³ / 24 P²: 0.2354² x 18.288³ / (24 x 88.96²) m, from memory
+    assert float(words["sag"]) == pytest.approx(-0.00585, abs=2e-4)
+    weak = Taped(pull=Decimal(1), hung=True)
+    with pytest.raises(Refused, match="too weak"):
+        check(
+            job,
+            "distance",
+            "102 103",
+            Asked(measured=measured("300"), taped=weak),
+            method="tape",
+        )
+
+
 def test_control_among_the_marks_is_what_a_stake_is_judged_from(job) -> None:
     """CP3 to 103: 80 ft by 60 ft, 100 ft."""
     found = check(
@@ -229,6 +251,7 @@ def test_a_mark_a_setup_leans_on_is_not_checked_by_that_setup(job) -> None:
             "differ more in height",
         ),
         ("fit", "101", Asked(measured=measured("1")), "what the sheet says"),
+        ("distance", "101 102", Asked(measured=measured("-40")), "above zero"),
     ],
 )
 def test_what_is_missing_or_odd_is_refused_with_a_sentence(

@@ -10,6 +10,7 @@ from django import forms
 
 from stakes.actions.checking import NEEDS, TAPED, Asked
 from stakes.forms.field.asking import (
+    NUMBER,
     FieldForm,
     LengthField,
     MarkField,
@@ -50,7 +51,7 @@ class CheckForm(RemarkFields, FieldForm):
     instrument = forms.CharField(
         label="Its serial number", required=False, max_length=60
     )
-    late = ("instrument", "remark", "at")
+    late = ("temperature", "pull", "hung", "instrument", "remark", "at")
 
     def __init__(
         self, *args: Any, sort: str, setups: Sequence[OpenSetup], **more: Any
@@ -63,6 +64,7 @@ class CheckForm(RemarkFields, FieldForm):
         fields |= _numbers(sort)
         self.base_fields = {**fields, **self.base_fields}
         super().__init__(*args, **more)
+        self._name_units()
         zone = self.record.time_zone
         if sort in ("position", "elevation", "angle", "distance", "diagonal"):
             self.fields["setup"] = forms.ChoiceField(
@@ -81,6 +83,13 @@ class CheckForm(RemarkFields, FieldForm):
         self.fields["method"].choices = [(m, m) for m in METHODS[sort]]
         self.initial.setdefault("method", METHODS[sort][0])
 
+    def _name_units(self) -> None:
+        """Temperature and pull in the units of whoever measures in this job's unit."""
+        units = ("°F", "pounds") if self.record.length_unit.is_foot else ("°C", "N")
+        for name, unit in zip(("temperature", "pull"), units, strict=True):
+            if name in self.fields:
+                self.fields[name].label += f", {unit}"
+
     def marks(self) -> list[uuid.UUID]:
         return [
             self.cleaned_data[f"mark{n}"].key
@@ -93,7 +102,12 @@ class CheckForm(RemarkFields, FieldForm):
 
     def asked(self) -> Asked:
         said = self.cleaned_data
-        taped = Taped(rise=said.get("rise"))
+        taped = Taped(
+            temperature=said.get("temperature"),
+            pull=said.get("pull"),
+            hung=said.get("hung") or False,
+            rise=said.get("rise"),
+        )
         return Asked(
             measured=said.get("measured"),
             angle=said.get("angle", ""),
@@ -146,5 +160,24 @@ def _numbers(sort: str) -> dict[str, forms.Field]:
         found["rise"] = LengthField(
             "Height difference of the ends",
             help_text="Only when it was measured along the slope.",
+        )
+        found["temperature"] = forms.DecimalField(
+            label="Tape temperature",
+            required=False,
+            min_value=-50,
+            max_value=160,
+            max_digits=5,
+            widget=forms.TextInput(attrs=dict(NUMBER)),
+        )
+        found["pull"] = forms.DecimalField(
+            label="Pull on the tape",
+            required=False,
+            min_value=1,
+            max_value=500,
+            max_digits=5,
+            widget=forms.TextInput(attrs=dict(NUMBER)),
+        )
+        found["hung"] = forms.BooleanField(
+            label="Held at its ends only, so that it sagged", required=False
         )
     return found
