@@ -17,6 +17,7 @@ from stakes.kinds.condition import (
 )
 from stakes.kinds.words import Component
 from stakes.models import Entry, EntryMark, Mark, Record
+from stakes.queries.setups import setup_called
 from stakes.record import By, Known, Refused, Said, append
 from stakes.record.lengths import Measured
 
@@ -143,6 +144,8 @@ def find_foreign_mark(
 
     def do(act: Act) -> list[Entry]:
         _refuse_label(record, label)
+        if setup is not None:
+            setup_called(record, setup)
         if (northing is None) != (easting is None):
             raise Refused(
                 "Only one of northing and easting was given.",

@@ -181,12 +181,17 @@ def _edges(record: Record, mark: Mark) -> list[Caution]:
     if mark.easting_m is None or mark.northing_m is None:
         return []
     point, found = Point(mark.easting_m, mark.northing_m), []
-    zones = Zone.objects.filter(record=record, sort__iexact="excavation", closed=True)
+    zones = [
+        zone
+        for zone in Zone.objects.filter(
+            record=record, sort__iexact="excavation", closed=True
+        )
+        if len(zone.corners_m) > 2
+    ]
+    laid_out = _layout_depth(record) if zones else None
     for zone in zones:
-        if len(zone.corners_m) < 3:
-            continue
         away = Polygon(zone.corners_m).distance(point)
-        depth, known = _depth(record, zone)
+        depth, known = _depth(zone, laid_out)
         if away <= EDGE_M + depth:
             found.append(_edge(record, zone.name, away == 0, depth, known))
     return found
@@ -198,7 +203,8 @@ def _edge(
     unit = record.length_unit
     deep = Length.from_metres(depth, unit, 1).text
     how = "deep" if known else "deep, assumed: no depth is recorded"
-    where = "lies in" if inside else "lies within 2 ft plus its depth of"
+    edge = f"{Length.from_metres(EDGE_M, unit, 1).text} {unit}"
+    where = "lies in" if inside else f"lies within its depth and {edge} of"
     return Caution(
         "excavation edge",
         f"This mark {where} excavation {name} ({deep} {unit} {how}). Do not enter it; "
@@ -207,13 +213,20 @@ def _edge(
     )
 
 
-def _depth(record: Record, zone: Zone) -> tuple[float, bool]:
+def _layout_depth(record: Record) -> float | None:
+    """The depth by which the offset stakes were last placed."""
+    issued = reading.entries(record, kinds=[LayoutIssued.KIND])
+    depths: Sequence[Measured] = [c.fact.depth for c in issued]  # type: ignore[attr-defined]
+    return depths[-1].metres if depths else None
+
+
+def _depth(zone: Zone, laid_out: float | None) -> tuple[float, bool]:
     """The recorded depth of an excavation, else that of the last layout, else assumed."""
     if zone.height_m:
         return abs(zone.height_m), True
-    issued = reading.entries(record, kinds=[LayoutIssued.KIND])
-    depths: Sequence[Measured] = [c.fact.depth for c in issued]  # type: ignore[attr-defined]
-    return (depths[-1].metres, True) if depths else (DEPTH_ASSUMED_M, False)
+    if laid_out is not None:
+        return laid_out, True
+    return DEPTH_ASSUMED_M, False
 
 
 _WHO = {

@@ -27,6 +27,9 @@ from stakes.record import Counted, Refused, reading
 
 RECHECK_EVERY = timedelta(hours=1)
 
+STILL_NAMED = timedelta(days=7)
+"""How long a closed setup is offered, for stakes that are recorded late."""
+
 ROLES: dict[str, tuple[tuple[str, int], ...]] = {
     "total station on a mark": (("occupied", 1), ("oriented on", 1)),
     "free station": (("oriented on", 2),),
@@ -46,7 +49,7 @@ GIVES_HEIGHT = frozenset({"occupied", "benchmark", "known"})
 
 @dataclass(frozen=True, slots=True)
 class OpenSetup:
-    """An open setup and how long ago it was last found right."""
+    """A setup to work from and how long ago it was last found right."""
 
     row: Setup
     checked_at: datetime
@@ -115,6 +118,18 @@ def open_setups(state: JobState, now: datetime | None = None) -> list[OpenSetup]
     rows = [s for s in state.setups.values() if s.closed_at is None and s.opened_at]
     rows.sort(key=lambda row: row.opened_at, reverse=True)
     return [_open(state, row, now) for row in rows]
+
+
+def usable_setups(state: JobState, now: datetime | None = None) -> list[OpenSetup]:
+    """Open setups, then those closed in the last days: paper is keyed in afterwards."""
+    now = now or timezone.now()
+    closed = [
+        s
+        for s in state.setups.values()
+        if s.closed_at is not None and now - s.closed_at < STILL_NAMED and s.opened_at
+    ]
+    closed.sort(key=lambda row: row.closed_at or now, reverse=True)
+    return [*open_setups(state, now), *(_open(state, row, now) for row in closed[:5])]
 
 
 def _open(state: JobState, row: Setup, now: datetime) -> OpenSetup:

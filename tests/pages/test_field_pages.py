@@ -17,6 +17,7 @@ from PIL import Image
 
 from stakes.actions.condition import report_gone
 from stakes.actions.setting import set_stake
+from stakes.actions.setups import close_setup
 from stakes.kinds.setting import StakeSet
 from stakes.models import Check, Entry, Mark, Record, Setup, Stake
 from stakes.queries.state import job_state
@@ -272,6 +273,29 @@ def test_numbers_far_off_are_asked_about_and_then_kept(ready: Field) -> None:
     assert ready.post(tail, **sent, far="on").status_code == 303
 
 
+def test_paper_is_keyed_in_for_a_setup_that_was_closed_since(ready: Field) -> None:
+    setup, now = setup_of(ready), timezone.now()
+    tail = f"marks/{ready.marks['101']}/set/"
+    close_setup(record=ready.record, setup=uuid.UUID(setup), by=CHIEF, at=now)
+    zone = ready.record.time_zone
+    earlier = (now - timezone.timedelta(minutes=5)).astimezone(zone)
+    sent = {"setup": setup, "holds": "hub and tack"}
+    assert "setup closed" in text(ready.post(tail, **sent)).lower()
+    done = ready.post(tail, **sent, at=f"{earlier:%Y-%m-%dT%H:%M}")
+    assert done.status_code == 303, text(done)
+    assert not ready.stake("101").held
+
+
+def test_a_visit_of_another_job_is_not_named(ready: Field) -> None:
+    ready.post(
+        f"marks/{ready.marks['101']}/set/",
+        setup=setup_of(ready),
+        holds="hub and tack",
+        visit=str(uuid.uuid4()),
+    )
+    assert entries(ready.record, kinds=["set"])[-1].fact.occasion is None
+
+
 def test_an_empty_form_is_taken_as_sent(ready: Field) -> None:
     answer = ready.client.post(ready.url(f"marks/{ready.marks['101']}/set/"))
     assert answer.status_code == 422
@@ -297,7 +321,9 @@ def test_seen_undisturbed_is_one_tap_on_the_marks_page(ready: Field) -> None:
     assert entries(ready.record)[-1].kind == "seen"
 
 
-def test_several_marks_are_gone_at_once_with_a_cause_and_a_photo(ready: Field) -> None:
+def test_several_marks_are_gone_at_once_with_a_cause_and_a_photo(
+    ready: Field, cast: Cast, signed_in
+) -> None:
     put(ready, "101", "102")
     marks = [str(ready.marks[m]) for m in ("101", "102")]
     chosen = ready.client.get(ready.url("several/"), {"what": "gone", "mark": marks})
@@ -322,6 +348,12 @@ def test_several_marks_are_gone_at_once_with_a_cause_and_a_photo(ready: Field) -
     shown = ready.get(f"photos/{fact.photos[0]}/small.jpg")
     assert shown["Content-Type"] == "image/jpeg"
     assert "Entry" in text(ready.get(f"photos/{fact.photos[0]}/"))
+    page = text(ready.get(f"marks/{ready.marks['101']}/"))
+    assert f"photos/{fact.photos[0]}/small.jpg" in page
+    number, sha256 = ready.record.number, fact.photos[0]
+    for who, status in ((cast.auditor, 200), (cast.contractor, 403)):
+        seen = signed_in(who).get(f"/jobs/{number}/photos/{sha256}/large.jpg")
+        assert seen.status_code == status
 
 
 def photo() -> SimpleUploadedFile:

@@ -18,7 +18,7 @@ from django.utils import timezone
 from geometry.errors import GeometryError
 from geometry.units import Length, Unit
 from stakes.actions import photos
-from stakes.models import Record
+from stakes.models import EntryMatter, Record
 from stakes.queries.state import JobState, MarkView
 from stakes.record import Refused
 from stakes.record.append import CLOCKS_MAY_DIFFER
@@ -168,6 +168,11 @@ class FieldForm(forms.Form):
             )
         return at
 
+    def clean_visit(self) -> uuid.UUID | None:
+        """The visit, if this job knows it; a stranger's is simply not named."""
+        visit = self.cleaned_data["visit"]
+        return visit if visit and knows_visit(self.record, visit) else None
+
     def said(self) -> dict[str, Any]:
         """What every action takes: the record, the client's key, the time, the visit."""
         return {
@@ -233,6 +238,12 @@ class KeptPhotos:
             except signing.BadSignature:
                 continue
         return found
+
+
+def knows_visit(record: Record, visit: uuid.UUID) -> bool:
+    """Whether an entry of this job names the visit."""
+    named = EntryMatter.objects.filter(record=record, thing="visit", key=visit)
+    return named.exists()
 
 
 def find(state: JobState, text: str) -> MarkView | None:

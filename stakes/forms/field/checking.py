@@ -76,7 +76,9 @@ class CheckForm(RemarkFields, FieldForm):
                     ("", "no setup recorded"),
                 ],
                 initial=str(setups[0].row.key)
-                if setups and sort in ("position", "elevation", "angle")
+                if setups
+                and setups[0].row.closed_at is None
+                and sort in ("position", "elevation", "angle")
                 else "",
             )
             self.order_fields([*fields, "setup", "method", "photos"])

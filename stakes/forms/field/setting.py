@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from datetime import tzinfo
 from typing import Any
 
 from django import forms
@@ -88,8 +89,9 @@ class SetForm(RemarkFields, PassageFields, FieldForm):
         ]
         self.initial.setdefault("holds", listed[0])
         self.initial.setdefault("surface", surface)
-        if setups:
-            self.initial.setdefault("setup", str(setups[0].row.key))
+        still_open = [s for s in setups if s.row.closed_at is None]
+        if still_open:
+            self.initial.setdefault("setup", str(still_open[0].row.key))
         if view.stake is None or view.standing == "gone":
             del fields["old"]
         self._drop_what_it_does_not_carry(view.plan.carries)
@@ -149,9 +151,12 @@ def _signed(length: Measured | None, other_way: bool) -> Measured | None:
     return Measured.of(zero.length.minus(length.length))
 
 
-def setup_words(setup: OpenSetup, zone: Any) -> str:
-    """An open setup in a list: what it is, since when, how long since its check."""
-    opened = setup.row.opened_at.astimezone(zone)  # type: ignore[union-attr]
+def setup_words(setup: OpenSetup, zone: tzinfo) -> str:
+    """A setup in a list: what it is, since when, how long since its check."""
+    row = setup.row
+    opened = row.opened_at.astimezone(zone)  # type: ignore[union-attr]
+    words = f"{row.sort}, {row.opened_by}, {opened:%a %H:%M}"
+    if row.closed_at is not None:
+        return f"{words}, closed {row.closed_at.astimezone(zone):%a %H:%M}"
     ago = f"checked {setup.ago} ago" if setup.ever_passed else "never checked"
-    doubt = ", in question" if setup.doubt else ""
-    return f"{setup.row.sort}, {setup.row.opened_by}, {opened:%a %H:%M}, {ago}{doubt}"
+    return f"{words}, {ago}{', in question' if setup.doubt else ''}"

@@ -15,7 +15,7 @@ from stakes.pages.field.explained import numbers_of, worth_of
 from stakes.pages.field.setups import labels_of
 from stakes.pages.field.signs import row
 from stakes.pages.field.where import files, page, sent, state_of, to, visit_of
-from stakes.queries.setups import open_setups
+from stakes.queries.setups import usable_setups
 from stakes.queries.state import MarkView
 from stakes.record import reading
 
@@ -37,7 +37,7 @@ def check_make(request: HttpRequest, job: str, sort: str) -> HttpResponse:
         state=state,
         visit=visit_of(request),
         sort=sort,
-        setups=open_setups(state),
+        setups=usable_setups(state),
         initial={"mark1": view.label} if view else {},
     )
 

@@ -11,6 +11,7 @@ from stakes.can import Can, needs
 from stakes.forms.field.asking import find
 from stakes.kinds.setting import StakeSet
 from stakes.pages.field.answering import SeeOther
+from stakes.pages.field.photos import photos_of
 from stakes.pages.field.signs import (
     plan_numbers,
     row,
@@ -93,6 +94,7 @@ def mark(request: HttpRequest, job: str, mark: UUID) -> HttpResponse:
         verbs=VERBS[1:],
         planned=planned_row(view.plan),
         fact=setups.set_fact(state, view),
+        photos=photos_of(state.record, mark),
         before=before_setting(
             state, mark, person=request.asked.by.person, another_way="not chosen yet"
         ),

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from uuid import UUID
+
 from django.http import Http404, HttpRequest, HttpResponse
 
 from stakes.actions import photos
@@ -27,6 +29,24 @@ def photo(request: HttpRequest, job: str, sha256: str) -> HttpResponse:
 @needs(Can.RECORD)
 def photo_image(request: HttpRequest, job: str, sha256: str, size: str) -> HttpResponse:
     return image(request.asked.record, sha256, SIDES.get(size, SIDES["large"]))
+
+
+@needs(Can.READ_RECORD)
+def photo_of_record(
+    request: HttpRequest, job: str, sha256: str, size: str
+) -> HttpResponse:
+    """The same for those who read the record and record nothing."""
+    return image(request.asked.record, sha256, SIDES.get(size, SIDES["large"]))
+
+
+def photos_of(record: Record, mark: UUID) -> list[tuple[str, Counted]]:
+    """The photos that entries about a mark name, the latest first."""
+    said = reading.entries(record, mark=mark)
+    return [
+        (sha256, counted)
+        for counted in reversed(said)
+        for sha256 in getattr(counted.fact, "photos", ())
+    ]
 
 
 def image(record: Record, sha256: str, side: int) -> HttpResponse:

@@ -15,13 +15,13 @@ from stakes.pages.field.signs import plan_numbers, sign_of, state_words
 from stakes.pages.field.where import files, sent, state_of, to, visit_of
 from stakes.queries.before_setting import BREAKS_NO_GROUND, Before, before_setting
 from stakes.queries.labels import planned_row
-from stakes.queries.setups import open_setups
+from stakes.queries.setups import usable_setups
 
 
 @needs(Can.RECORD)
 def set_page(request: HttpRequest, job: str, mark: UUID) -> HttpResponse:
     view, state = view_of(request, mark), state_of(request)
-    setups = open_setups(state)
+    setups = usable_setups(state)
     surface = bool(request.GET.get("surface") or request.POST.get("surface") == "True")
     before = _before(request, mark, surface)
     back = to(request, "mark", mark=mark)
@@ -90,11 +90,12 @@ def _before(request: HttpRequest, mark: UUID, surface: bool) -> Before:
 
 def _chosen(request: HttpRequest) -> str:
     """The setup named in the address, or the one opened last; empty: none is open."""
-    listed = [str(s.row.key) for s in open_setups(state_of(request))]
+    listed = usable_setups(state_of(request))
     asked = request.POST.get("setup", request.GET.get("setup", ""))
-    if asked in listed:
+    if asked in [str(s.row.key) for s in listed]:
         return asked
-    return listed[0] if listed else ""
+    still_open = [str(s.row.key) for s in listed if s.row.closed_at is None]
+    return still_open[0] if still_open else ""
 
 
 def _initial(request: HttpRequest) -> dict[str, object]:

@@ -10,7 +10,8 @@ from django.shortcuts import render
 from django.urls import reverse
 from django.utils.datastructures import MultiValueDict
 
-from stakes.models import EntryMatter, Record
+from stakes.forms.field.asking import knows_visit
+from stakes.models import Record
 from stakes.queries.state import JobState, job_state
 
 
@@ -28,12 +29,8 @@ def visit_of(request: HttpRequest) -> uuid.UUID | None:
         visit = uuid.UUID(text)
     except ValueError:
         return None
-    known = EntryMatter.objects.filter(
-        record=request.asked.record,  # type: ignore[attr-defined]
-        thing="visit",
-        key=visit,
-    )
-    return visit if known.exists() else None
+    record = request.asked.record  # type: ignore[attr-defined]
+    return visit if knows_visit(record, visit) else None
 
 
 def sent(request: HttpRequest) -> QueryDict | None:
