@@ -11,4 +11,7 @@ class JobsConfig(AppConfig):
 
     def ready(self) -> None:
         from jobs import folds, kinds  # noqa: F401  (they register themselves)
-        from jobs.queries import cards  # noqa: F401
+        from jobs.kinds.corrected_by import register
+        from jobs.queries import cards, days_cards, days_needing  # noqa: F401
+
+        register()

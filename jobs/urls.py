@@ -4,7 +4,19 @@ from __future__ import annotations
 
 from django.urls import path
 
-from jobs.pages import companies, jobs, people, seats, sign_in, terms, tolerances
+from jobs.pages import (
+    companies,
+    handovers,
+    holds,
+    jobs,
+    people,
+    requests,
+    seats,
+    sign_in,
+    terms,
+    tolerances,
+    visits,
+)
 
 app_name = "jobs"
 urlpatterns = [
@@ -62,4 +74,91 @@ urlpatterns = [
         tolerances.tolerance_remove,
         name="tolerance-remove",
     ),
+    path("jobs/<str:job>/requests/", requests.requests, name="requests"),
+    path("jobs/<str:job>/requests/make/", requests.request_make, name="request-make"),
+    path("jobs/<str:job>/requests/<uuid:ask>/", requests.request_page, name="request"),
+    path(
+        "jobs/<str:job>/requests/<uuid:ask>/accept/",
+        requests.request_accept,
+        name="request-accept",
+    ),
+    path(
+        "jobs/<str:job>/requests/<uuid:ask>/decline/",
+        requests.request_decline,
+        name="request-decline",
+    ),
+    path(
+        "jobs/<str:job>/requests/<uuid:ask>/talk/",
+        requests.request_talk,
+        name="request-talk",
+    ),
+    path(
+        "jobs/<str:job>/requests/<uuid:ask>/cost/",
+        requests.request_cost,
+        name="request-cost",
+    ),
+    path(
+        "jobs/<str:job>/requests/<uuid:ask>/withdraw/",
+        requests.request_withdraw,
+        name="request-withdraw",
+    ),
+    path(
+        "jobs/<str:job>/requests/<uuid:ask>/close/",
+        requests.request_close,
+        name="request-close",
+    ),
+    path("jobs/<str:job>/visits/", visits.visits, name="visits"),
+    path("jobs/<str:job>/visits/plan/", visits.visit_plan, name="visit-plan"),
+    path("jobs/<str:job>/visits/<uuid:visit>/", visits.visit_page, name="visit"),
+    path(
+        "jobs/<str:job>/visits/<uuid:visit>/cancel/",
+        visits.visit_cancel,
+        name="visit-cancel",
+    ),
+    path(
+        "jobs/<str:job>/visits/<uuid:visit>/arrive/",
+        visits.visit_arrive,
+        name="visit-arrive",
+    ),
+    path(
+        "jobs/<str:job>/visits/<uuid:visit>/wait/", visits.visit_wait, name="visit-wait"
+    ),
+    path(
+        "jobs/<str:job>/visits/<uuid:visit>/leave/",
+        visits.visit_leave,
+        name="visit-leave",
+    ),
+    path(
+        "jobs/<str:job>/visits/<uuid:visit>/tasks/<uuid:task>/end/",
+        visits.task_end,
+        name="task-end",
+    ),
+    path(
+        "jobs/<str:job>/visits/<uuid:visit>/ticket/",
+        visits.ticket_close,
+        name="ticket-close",
+    ),
+    path("jobs/<str:job>/handovers/", handovers.handovers, name="handovers"),
+    path(
+        "jobs/<str:job>/handovers/make/", handovers.handover_make, name="handover-make"
+    ),
+    path(
+        "jobs/<str:job>/handovers/<uuid:handover>/",
+        handovers.handover_page,
+        name="handover",
+    ),
+    path(
+        "jobs/<str:job>/handovers/<uuid:handover>/answer/",
+        handovers.handover_answer,
+        name="handover-answer",
+    ),
+    path("jobs/<str:job>/holds/", holds.holds, name="holds"),
+    path("jobs/<str:job>/holds/send/", holds.hold_send, name="hold-send"),
+    path("jobs/<str:job>/holds/<uuid:hold>/", holds.hold_page, name="hold"),
+    path(
+        "jobs/<str:job>/holds/<uuid:hold>/acknowledge/",
+        holds.hold_acknowledge,
+        name="hold-acknowledge",
+    ),
+    path("jobs/<str:job>/holds/<uuid:hold>/lift/", holds.hold_lift, name="hold-lift"),
 ]

@@ -103,7 +103,7 @@ def test_the_price_is_no_part_of_the_hashed_body(job: Job, cast: Cast) -> None:
 
     said = Entry.objects.filter(record=job.record, kind="re-stake terms set").last()
 
-    assert "7731" not in said.body and '"price"' in said.body
+    assert "7731.45" not in said.body and '"price"' in said.body
 
 
 def test_a_price_agreed_with_one_company_is_seen_by_it_and_by_the_office(

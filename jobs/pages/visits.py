@@ -1,0 +1,263 @@
+"""Visits: planned, on site, ended task by task, the day's ticket."""
+
+from __future__ import annotations
+
+from uuid import UUID, uuid4
+
+from django.http import Http404, HttpRequest, HttpResponse
+from django.shortcuts import render
+from django.urls import reverse
+
+from jobs.actions import visits as act
+from jobs.forms.days import (
+    ArriveForm,
+    LeaveForm,
+    OutcomeForm,
+    ReasonForm,
+    StandByForm,
+    TicketForm,
+    VisitForm,
+)
+from jobs.kinds.visits import Member, PlannedTask
+from jobs.models import Request, Visit
+from jobs.pages.answer import answer, sent
+from jobs.queries.companies import companies_seen
+from jobs.queries.visits import day_of, visits_seen
+from stakes.can import Asked, Can, needs
+from stakes.models import Mark
+
+
+@needs(Can.SEE_VISITS)
+def visits(request: HttpRequest, job: str) -> HttpResponse:
+    found = list(visits_seen(request.asked))
+    context = {
+        "coming": [v for v in found if not v.left_at and not v.cancelled],
+        "past": [v for v in found if v.left_at or v.cancelled],
+    }
+    return render(request, "jobs/visits.html", context)
+
+
+def _one(asked: Asked, visit: UUID) -> Visit:
+    one = visits_seen(asked).filter(key=visit).first()
+    if one is None:
+        raise Http404
+    return one
+
+
+def _to(job: str, visit: UUID) -> str:
+    return reverse("jobs:visit", kwargs={"job": job, "visit": visit})
+
+
+@needs(Can.SCHEDULE)
+def visit_plan(request: HttpRequest, job: str) -> HttpResponse:
+    asked = request.asked
+    waiting = Request.objects.filter(
+        record=asked.record, state__in=("received", "accepted")
+    ).order_by("received_at")
+    initial = {"requests": request.GET.getlist("ask")}
+    form = VisitForm(
+        sent(request), record=asked.record, requests=waiting, initial=initial
+    )
+    made: list[UUID] = []
+
+    def do() -> None:
+        said = form.cleaned_data
+        crew = said["crew"]
+        made.append(
+            act.plan_visit(
+                record=asked.record,
+                crew=crew.name if crew else "",
+                members=_members(crew),
+                starts_at=said["starts_at"],
+                ends_at=said["ends_at"],
+                tasks=_tasks(said),
+                words=said["words"],
+                by=asked.by,
+            )
+        )
+
+    return answer(
+        request,
+        form,
+        do,
+        to=lambda: _to(job, made[0]),
+        said="The visit is planned.",
+        title="Plan a visit",
+        verb="Plan it",
+    )
+
+
+def _members(crew) -> list[Member]:
+    if crew is None:
+        return []
+    chief = Member(
+        person=str(crew.party_chief.pk), name=crew.party_chief.name, duty="party chief"
+    )
+    others = [m for m in crew.members.all() if m.pk != crew.party_chief.pk]
+    return [chief, *(Member(person=str(m.pk), name=m.name) for m in others)]
+
+
+def _tasks(said: dict) -> list[PlannedTask]:
+    tasks = [act.task_for(request) for request in said["requests"]]
+    if said["sort"]:
+        tasks.append(
+            PlannedTask(
+                task=uuid4(),
+                sort=said["sort"],
+                words=said["words"][:200],
+                listed=tuple(said["listed"]),
+            )
+        )
+    return tasks
+
+
+@needs(Can.SEE_VISITS)
+def visit_page(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
+    asked = request.asked
+    one = _one(asked, visit)
+    tasks = one.tasks
+    if companies_seen(asked) is not None:
+        own = {
+            str(k)
+            for k in Request.objects.filter(
+                record=asked.record, company=asked.company
+            ).values_list("key", flat=True)
+        }
+        crew = Can.RECORD in asked.rights
+        tasks = [t for t in tasks if crew or t.get("ask") in own]
+    keys = [UUID(m) for t in tasks for m in t.get("listed", [])]
+    marks = Mark.objects.filter(record=asked.record).in_bulk(keys)
+    context = {
+        "one": one,
+        "tasks": [
+            (t, [marks[UUID(m)] for m in t.get("listed", []) if UUID(m) in marks])
+            for t in tasks
+        ],
+        "day": day_of(asked, one),
+    }
+    return render(request, "jobs/visit.html", context)
+
+
+@needs(Can.SCHEDULE)
+def visit_cancel(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
+    asked, one = request.asked, _one(request.asked, visit)
+    form = ReasonForm(sent(request))
+    return answer(
+        request,
+        form,
+        lambda: act.cancel_visit(
+            record=asked.record, visit=one.key, by=asked.by, **form.cleaned_data
+        ),
+        to=_to(job, visit),
+        said="The visit is cancelled.",
+        title="Cancel the visit",
+        verb="Cancel it",
+    )
+
+
+@needs(Can.RECORD)
+def visit_arrive(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
+    asked, one = request.asked, _one(request.asked, visit)
+    named = "\n".join(f"{m['name']}, {m.get('duty', '')}" for m in one.members)
+    form = ArriveForm(sent(request), record=asked.record, initial={"members": named})
+
+    def do() -> None:
+        said = dict(form.cleaned_data)
+        said["members"] = [
+            _member(line) for line in said["members"].splitlines() if line
+        ]
+        said["instruments"] = said["instruments"].splitlines()
+        act.arrive(record=asked.record, visit=one.key, by=asked.by, **said)
+
+    return answer(
+        request,
+        form,
+        do,
+        to=_to(job, visit),
+        said="Arrival recorded.",
+        title="On site",
+        verb="Record the arrival",
+    )
+
+
+def _member(line: str) -> Member:
+    name, _, duty = line.partition(",")
+    return Member(person="", name=name.strip(), duty=duty.strip())
+
+
+@needs(Can.RECORD)
+def visit_wait(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
+    asked, one = request.asked, _one(request.asked, visit)
+    form = StandByForm(sent(request), record=asked.record)
+    return answer(
+        request,
+        form,
+        lambda: act.stand_by(
+            record=asked.record, visit=one.key, by=asked.by, **form.cleaned_data
+        ),
+        to=_to(job, visit),
+        said="The wait is recorded.",
+        title="Standing by",
+        verb="Record the wait",
+    )
+
+
+@needs(Can.RECORD)
+def visit_leave(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
+    asked, one = request.asked, _one(request.asked, visit)
+    form = LeaveForm(sent(request), record=asked.record)
+    return answer(
+        request,
+        form,
+        lambda: act.leave(
+            record=asked.record, visit=one.key, by=asked.by, **form.cleaned_data
+        ),
+        to=_to(job, visit),
+        said="Leaving recorded.",
+        title="Leaving the site",
+        verb="Record it",
+    )
+
+
+@needs(Can.RECORD)
+def task_end(request: HttpRequest, job: str, visit: UUID, task: UUID) -> HttpResponse:
+    asked, one = request.asked, _one(request.asked, visit)
+    planned = next((t for t in one.tasks if t["task"] == str(task)), None)
+    if planned is None:
+        raise Http404
+    form = OutcomeForm(sent(request))
+    return answer(
+        request,
+        form,
+        lambda: act.end_task(
+            record=asked.record,
+            visit=one.key,
+            task=task,
+            by=asked.by,
+            **form.cleaned_data,
+        ),
+        to=_to(job, visit),
+        said="The outcome is recorded.",
+        title=f"How it ended: {planned['sort']}",
+        lead=planned.get("words", ""),
+        verb="Record it",
+    )
+
+
+@needs(Can.RECORD)
+def ticket_close(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
+    asked, one = request.asked, _one(request.asked, visit)
+    form = TicketForm(sent(request))
+    return answer(
+        request,
+        form,
+        lambda: act.close_ticket(
+            record=asked.record, visit=one.key, by=asked.by, **form.cleaned_data
+        ),
+        to=_to(job, visit),
+        said="The day's ticket is closed.",
+        title="The day's ticket",
+        lead="Hand the device to the superintendent, or say that nobody was there.",
+        verb="Close the ticket",
+        template="jobs/form.html",
+    )
