@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+from collections.abc import Collection
 from datetime import datetime
 from typing import Any
 
+from stakes.can import Can
 from stakes.kinds.correcting import Withdrawn
 from stakes.models import Entry, Record
 from stakes.record import By, Fact, Known, Refused, Said, append, held
@@ -14,11 +16,37 @@ from stakes.record.reading import corrections, decoded
 LEFT_TO_THEIR_OWN_PAGES = ("job opened", "seat given", "seat ended")
 """Kinds whose undoing is an act of its own, with rules of its own."""
 
+CORRECTED_BY: dict[str, Can] = {
+    "planned": Can.ISSUE,
+    "layout issued": Can.ISSUE,
+    "superseded": Can.ISSUE,
+    "retired": Can.PLAN,
+    "zone drawn": Can.PLAN,
+    "sheet received": Can.PLAN,
+    "sheet read": Can.PLAN,
+    "question asked": Can.PLAN,
+    "question answered": Can.PLAN,
+    "direction given": Can.PLAN,
+    "direction settled": Can.PLAN,
+    "value adopted": Can.ADOPT,
+    "trust answered": Can.ADOPT,
+    "gate accepted": Can.PASS_GATE,
+}
+"""Who may correct a kind: whoever may say it. The rest are field facts (RECORD); the
+kinds of `jobs` are added by `jobs`."""
 
-def withdraw(record: Record, number: int, *, why: str, by: By) -> Entry:
+
+def needed(kind: str) -> Can:
+    """The right that correcting an entry of this kind takes."""
+    return CORRECTED_BY.get(kind, Can.RECORD)
+
+
+def withdraw(
+    record: Record, number: int, *, why: str, by: By, rights: Collection[Can]
+) -> Entry:
     """Take back what an entry said; it stays readable, and why stands beside it."""
     with held(record) as locked:
-        target = _target(locked, number)
+        target = _target(locked, number, rights)
         said = Said(
             fact=Withdrawn(),
             known=Known.DECIDED,
@@ -36,6 +64,7 @@ def correct(
     changes: dict[str, Any],
     why: str,
     by: By,
+    rights: Collection[Can],
     at: datetime | None = None,
 ) -> Entry:
     """Say an entry again with some facts changed; all its facts are replaced.
@@ -43,7 +72,7 @@ def correct(
     `changes` are plain data by fact name; `at` is the right time, None to keep it.
     """
     with held(record) as locked:
-        target = _target(locked, number)
+        target = _target(locked, number, rights)
         before = decoded(target, {}).fact
         after = fact_from(target.kind, {**_data(before), **changes})
         if after == before and at in (None, target.happened_at):
@@ -67,7 +96,7 @@ def _data(fact: Fact) -> dict[str, Any]:
     return facts_as_data(fact)
 
 
-def _target(record: Record, number: int) -> Entry:
+def _target(record: Record, number: int, rights: Collection[Can]) -> Entry:
     target = Entry.objects.filter(record=record, number=number).first()
     if target is None:
         raise Refused(f"There is no entry {number} in this record.", code="no target")
@@ -76,6 +105,12 @@ def _target(record: Record, number: int) -> Entry:
             f"An entry of the kind {target.kind!r} is not corrected here.",
             do="Use the page it was made on.",
             code="other page",
+        )
+    if needed(target.kind) not in rights:
+        raise Refused(
+            f"Correcting {target.kind!r} takes the right to {needed(target.kind)}.",
+            do="Ask somebody who has it.",
+            code="not yours",
         )
     newer = corrections(record).get(number)
     if newer is not None:

@@ -158,3 +158,21 @@ def test_the_number_of_queries_of_the_plan_does_not_grow_with_marks(site) -> Non
     with CaptureQueriesContext(connection) as many:
         client.get(address)
     assert len(many) == len(few)
+
+
+def test_correcting_takes_the_right_to_say_it(site) -> None:
+    cast, record, *_ = site
+    planned = Entry.objects.filter(kind="planned").first()
+    client = Client()
+    client.force_login(cast.crew)
+    address = reverse("stakes:entry-withdraw", args=[record.number, planned.number])
+    answer = client.post(address, {"why": "no"})
+    assert answer.status_code == 422
+    assert "takes the right to issue a plan" in answer.content.decode()
+
+
+def test_every_kind_that_needs_another_right_is_a_kind() -> None:
+    from stakes.actions.correcting import CORRECTED_BY
+    from stakes.record import KINDS
+
+    assert set(CORRECTED_BY) <= set(KINDS)

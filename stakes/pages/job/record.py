@@ -10,7 +10,12 @@ from django.http import Http404, HttpRequest, HttpResponse, HttpResponseRedirect
 from django.shortcuts import render
 from django.urls import reverse
 
-from stakes.actions.correcting import correct, withdraw
+from stakes.actions.correcting import (
+    LEFT_TO_THEIR_OWN_PAGES,
+    correct,
+    needed,
+    withdraw,
+)
 from stakes.can import Can, needs
 from stakes.forms.correcting import CorrectForm, WithdrawForm
 from stakes.models import Entry, EntryMark, EntryMatter
@@ -94,6 +99,8 @@ def entry(request: HttpRequest, job: str, number: int) -> HttpResponse:
         "body": json.dumps(said.body, indent=2, ensure_ascii=False, sort_keys=True),
         "links": [(link, labels.get(link.mark, "?")) for link in links],
         "matters": EntryMatter.objects.filter(record=record, number=number),
+        "may_correct": needed(one.kind) in request.asked.rights
+        and one.kind not in LEFT_TO_THEIR_OWN_PAGES,
         "corrected_by": Entry.objects.filter(record=record, corrects=number),
     }
     return render(request, "stakes/job/entry.html", context)
@@ -113,7 +120,13 @@ def entry_withdraw(request: HttpRequest, job: str, number: int) -> HttpResponse:
     form = WithdrawForm(request.POST if request.method == "POST" else None)
 
     def do() -> str:
-        withdraw(asked.record, number, by=asked.by, **form.cleaned_data)
+        withdraw(
+            asked.record,
+            number,
+            by=asked.by,
+            rights=asked.rights,
+            **form.cleaned_data,
+        )
         return reverse("stakes:entry", kwargs={"job": job, "number": number})
 
     return act(
@@ -147,6 +160,7 @@ def entry_correct(request: HttpRequest, job: str, number: int) -> HttpResponse:
             at=form.cleaned_data["at"],
             why=form.cleaned_data["why"],
             by=asked.by,
+            rights=asked.rights,
         )
         return reverse("stakes:entry", kwargs={"job": job, "number": made.number})
 
