@@ -12,7 +12,7 @@ from pathlib import Path
 
 from django.conf import settings
 
-from stakes.actions.issuing import MORE, RowsRefused, keep_draft, rows_root
+from stakes.actions.issuing import MORE, Keyed, RowsRefused, keep_draft, rows_root
 from stakes.exchange.comma import (
     BY_HEADER,
     ORDERS,
@@ -135,15 +135,15 @@ def _about(
     }
 
 
-def _file_read(draft: Draft, rows: Sequence[Row]) -> list[Fact]:
+def _file_read(draft: Draft, keyed: Sequence[Keyed]) -> list[Fact]:
     """What issuing an imported draft says of its file."""
     about = dict(draft.about)
     sheet = about.pop("sheet")
     return [
         FileRead(
             plan=draft.key,
-            taken=len(rows),
-            rows_root=rows_root(rows),
+            taken=len(keyed),
+            rows_root=rows_root([row for row, _ in keyed]),
             sheet=uuid.UUID(sheet) if sheet else None,
             left_out=tuple(about.pop("left_out")),
             complaints=tuple(about.pop("complaints")),

@@ -74,7 +74,8 @@ def plan_marks(
     """Draft a plan from rows as people type them; nothing is issued yet.
 
     A row has number (`label`), purpose, carries, northing, easting, elevation, sort,
-    stage, line, words, offset, refers_to, tolerance, lasts: texts, in the job's unit.
+    stage, line, words, offset, refers_to, tolerance, lasts: texts, in the job's unit;
+    and its number on the page (`row`), if that is not its place in the list.
     Raises RowsRefused with a sentence for every row that cannot stand.
     """
     if len(rows) > MOST_TYPED:
@@ -85,7 +86,8 @@ def plan_marks(
         )
     read: list[Row] = []
     wrong: list[Complaint] = []
-    for number, written in enumerate(rows, start=1):
+    for position, written in enumerate(rows, start=1):
+        number = int(written.get("row", position))
         row, more = read_row(written, record.length_unit, number, basis)
         wrong += more
         read += [row] if row else []
@@ -178,7 +180,9 @@ def leave_draft(*, record: Record, draft: uuid.UUID, by: By) -> None:
         found.save(update_fields=["state"])
 
 
-MORE: dict[str, Callable[[Draft, Sequence[Row]], list[Fact]]] = {}
+Keyed = tuple[Row, uuid.UUID]
+
+MORE: dict[str, Callable[[Draft, Sequence[Keyed]], list[Fact]]] = {}
 """What issuing a draft of one sort says besides its marks: a file read, a layout."""
 
 
@@ -244,9 +248,8 @@ def _statements(
         )
         for part in _parts(keyed)
     ]
-    facts += (
-        MORE[draft.sort](draft, [c.row for c in told]) if draft.sort in MORE else []
-    )
+    if facts and draft.sort in MORE:
+        facts += MORE[draft.sort](draft, [(c.row, key) for c, key in keyed])
     if adopt is not None:
         facts += _adopted(draft, keyed, adopt)
     if not facts:

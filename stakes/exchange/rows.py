@@ -116,7 +116,9 @@ def read_row(
     carries = _carries(written, lengths, purpose, row, wrong)
     if not texts["label"]:
         wrong.append(Complaint(row, "label", "It has no number. Give it one."))
-    wrong += _missing(texts["label"] or "it", carries, lengths, row)
+    said = {c.field for c in wrong}
+    missing = _missing(texts["label"] or "it", carries, lengths, row)
+    wrong += [c for c in missing if c.field not in said]
     if purpose == "stake" and any(w in texts["sort"].casefold() for w in LEGAL):
         wrong.append(
             Complaint(

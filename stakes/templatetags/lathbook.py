@@ -75,6 +75,20 @@ def from_nm(nanometres: str, record: Record) -> SafeString | str:
     )
 
 
+@register.filter
+def from_metres(metres: float | None, record: Record) -> SafeString | str:
+    """A computed length in the job's unit: 0.01 ft or 1 mm, the unit beside it."""
+    if metres is None:
+        return "not computed"
+    decimals = 3 if record.length_unit is Unit.METRE else 2
+    length = Length.from_metres(float(metres), record.length_unit, decimals)
+    return format_html(
+        '{}<span class="unit">{}</span>',
+        length.text,
+        _SHORT.get(str(record.length_unit), str(record.length_unit)),
+    )
+
+
 _SHORT = {"ftUS": "ft (US)"}
 
 _UNITS = {

@@ -4,7 +4,11 @@ from __future__ import annotations
 
 from django.urls import URLPattern, URLResolver
 
-from stakes.urls import job
+from stakes.urls import job, office, photos
 
 app_name = "stakes"
-urlpatterns: list[URLPattern | URLResolver] = [*job.urlpatterns]
+urlpatterns: list[URLPattern | URLResolver] = [
+    *job.urlpatterns,
+    *office.urlpatterns,
+    *photos.urlpatterns,
+]

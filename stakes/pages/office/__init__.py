@@ -1,0 +1,1 @@
+"""Pages of the office: sheets, control, plan, import, zones, layout."""
