@@ -50,16 +50,16 @@ def fieldwork(world: World) -> None:
         report_gone(record=record, marks=[marks["102"]], by=CHIEF, at=after(20))
 
 
-@example("field:setup-open")
-def setup_open(world: World, record: Record) -> Kwargs:
-    return {"sort": "station"}
+def word(name: str, known: str) -> None:
+    """A word in an address is no id: of another job stands one that nobody uses."""
+
+    @example(name)
+    def words(world: World, record: Record) -> Kwargs:
+        here = record.pk == world.here.record.pk
+        parameter = "what" if name == "field:found" else "sort"
+        return {parameter: known if here else "elsewhere"}
 
 
-@example("field:check-make")
-def check_make(world: World, record: Record) -> Kwargs:
-    return {"sort": "distance"}
-
-
-@example("field:found")
-def found(world: World, record: Record) -> Kwargs:
-    return {"what": "gone"}
+word("field:setup-open", "station")
+word("field:check-make", "distance")
+word("field:found", "gone")

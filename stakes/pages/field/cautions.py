@@ -16,6 +16,7 @@ from stakes.forms.field.cautions import (
     HazardGoneForm,
     LocateForm,
 )
+from stakes.models import EntryMatter
 from stakes.pages.field.answering import answered
 from stakes.pages.field.signs import row
 from stakes.pages.field.where import page, sent, state_of, to, visit_of
@@ -90,7 +91,11 @@ def hazards(request: HttpRequest, job: str) -> HttpResponse:
 
 @needs(Can.RECORD)
 def hazard_gone(request: HttpRequest, job: str, hazard: UUID) -> HttpResponse:
-    flagged = {h.hazard: h for h in locates.hazards(request.asked.record)}
+    record = request.asked.record
+    flagged = {h.hazard: h for h in locates.hazards(record)}
+    known = EntryMatter.objects.filter(record=record, thing="hazard", key=hazard)
+    if not known.exists():
+        raise Http404("There is no such hazard on this job.")
     form = HazardGoneForm(
         sent(request), state=state_of(request), visit=visit_of(request)
     )
@@ -106,8 +111,6 @@ def hazard_gone(request: HttpRequest, job: str, hazard: UUID) -> HttpResponse:
         )
         return to(request, "hazards")
 
-    if hazard not in flagged and not form.is_bound:
-        raise Http404("This hazard is not flagged here.")
     return answered(
         request,
         form,
