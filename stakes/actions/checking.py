@@ -4,76 +4,23 @@ from __future__ import annotations
 
 import uuid
 from collections.abc import Sequence
-from dataclasses import dataclass, field
 from datetime import datetime
 
-import numpy as np
-
 from geometry.decide import Against
-from geometry.units import angle_text, half_turn
 from stakes.actions.once import Act, follows, once
 from stakes.actions.told import kept_apart, short
-from stakes.kinds.checking import CheckSort, Judgement, StakeChecked
-from stakes.models import Entry, Mark, Record
-from stakes.queries import expected, judging, measuring, setups, taping
+from stakes.kinds.checking import CheckSort, StakeChecked
+from stakes.models import Entry, Record
+from stakes.queries import measuring, setups
 from stakes.queries.before_setting import mark_called
 from stakes.queries.means import check_means, worth
-from stakes.queries.setup_checks import read_angle
+from stakes.queries.stake_checks import NEEDS, Asked, Checked
 from stakes.queries.state import JobState, MarkView
 from stakes.queries.state_then import state_then
-from stakes.queries.taping import Taped
 from stakes.queries.tolerance import ToleranceClass, class_of, classes_of
 from stakes.record import By, Known, Refused, Said, append
-from stakes.record.lengths import Measured
 
-NEEDS: dict[str, tuple[str, ...]] = {
-    "distance": ("one end", "other end"),
-    "diagonal": ("one end", "other end"),
-    "angle": ("angle at", "from", "to"),
-    "position": ("mark",),
-    "elevation": ("mark",),
-    "line": ("mark", "line from", "line to"),
-    "fit": ("mark",),
-}
-"""The marks each sort of check names, in their order."""
-
-TAPED = frozenset({"distance", "diagonal", "fit"})
-"""Checks whose length may be taped, with its corrections."""
-
-
-@dataclass(frozen=True, slots=True)
-class Asked:
-    """What a crew measured. `measured` is a length as read: a distance, an elevation, an
-    offset right of a line, a distance to existing work."""
-
-    measured: Measured | None = None
-    angle: str = ""
-    northing: Measured | None = None
-    easting: Measured | None = None
-    by_sheet: Measured | None = None
-    taped: Taped | None = None
-
-
-@dataclass(slots=True)
-class _Check:
-    """One check being worked out."""
-
-    state: JobState
-    sort: str
-    views: Sequence[MarkView]
-    asked: Asked
-    method: str
-    setup: uuid.UUID | None
-    limits: ToleranceClass
-    words: list[str] = field(default_factory=list)
-
-    @property
-    def marks(self) -> list[Mark]:
-        return [view.plan for view in self.views]
-
-    @property
-    def unit(self):  # type: ignore[no-untyped-def]
-        return self.state.record.length_unit
+__all__ = ["Asked", "check_stakes"]
 
 
 def check_stakes(
@@ -112,10 +59,10 @@ def check_stakes(
         judged, others = _apart(sort, views)
         used = measuring.METHODS[row.sort] if row else method
         classes = classes_of(record, at)
-        made = _Check(
+        made = Checked(
             state, sort, views, asked, used, setup, _strictest(judged, sort, classes)
         )
-        judgement = _JUDGE[sort](made)
+        judgement = made.judge()
         component = "e" if sort == "elevation" else "p"
         means = check_means(
             state,
@@ -207,7 +154,7 @@ def _set_by(judged: Sequence[MarkView]) -> tuple[uuid.UUID, ...]:
     return tuple(dict.fromkeys(found))
 
 
-def _against(made: _Check, against: str, existing: bool) -> list[Against]:
+def _against(made: Checked, against: str, existing: bool) -> list[Against]:
     if made.sort == "fit":
         if not against.strip():
             raise Refused(
@@ -222,134 +169,3 @@ def _against(made: _Check, against: str, existing: bool) -> list[Against]:
         "position": [Against.CONTROL],
         "elevation": [Against.BENCHMARK],
     }.get(made.sort, [])
-
-
-def _distance(made: _Check) -> Judgement:
-    found = expected.distance(*made.marks)
-    return _length(made, found.value, found.variance)
-
-
-def _line(made: _Check) -> Judgement:
-    found = expected.offset(*made.marks)
-    return _length(made, found.value, found.variance)
-
-
-def _fit(made: _Check) -> Judgement:
-    sheet = _given(made.asked.by_sheet, "by_sheet", "what the sheet says")
-    return _length(made, sheet.metres, 0.0, computed=sheet)
-
-
-def _length(
-    made: _Check,
-    computed_m: float,
-    variance: float,
-    computed: Measured | None = None,
-) -> Judgement:
-    read = _given(made.asked.measured, "measured", "what was measured")
-    true_m = read.metres
-    if made.sort in TAPED and true_m <= 0:
-        raise Refused(
-            "A distance is above zero.", do="Type it without a sign.", field="measured"
-        )
-    if made.asked.taped is not None:
-        corrected = taping.corrected(read.metres, made.asked.taped, made.unit)
-        true_m, made.words = corrected.metres, list(corrected.words)
-    own = measuring.length_variance(made.method, abs(true_m))
-    return judging.judge(
-        true_m - computed_m,
-        made.limits,
-        "p",
-        measuring.sigma(own, variance),
-        made.unit,
-        measured=read,
-        computed=computed or judging.as_measured(computed_m, made.unit),
-    )
-
-
-def _angle(made: _Check) -> Judgement:
-    """An angle is judged by its length across, at the farthest mark judged."""
-    at, back, fore = made.marks
-    found = expected.angle(at, back, fore)
-    reading = read_angle(made.asked.angle, "angle")
-    legs = [expected.distance(at, leg).value for leg in (back, fore)]
-    moved = [
-        leg
-        for leg, mark in zip(legs, (back, fore), strict=True)
-        if mark.purpose == "stake"
-    ]
-    reach = max(moved) if moved else min(legs)
-    u = measuring.sigma(found.variance, measuring.angle_variance()) * reach
-    made.words.append(
-        f"{angle_text(reading)} measured, {angle_text(found.value)} computed; judged "
-        f"across at {judging.as_measured(reach, made.unit).text} {made.unit}"
-    )
-    across = float(half_turn(reading - found.value)) * reach
-    return judging.judge(across, made.limits, "p", u, made.unit)
-
-
-def _position(made: _Check) -> Judgement:
-    mark = made.marks[0]
-    north = _given(made.asked.northing, "northing", "the northing measured")
-    east = _given(made.asked.easting, "easting", "the easting measured")
-    gap = np.array([east.metres, north.metres]) - expected.place(mark)
-    own = _place_covariance(made, mark) + expected.covariance(mark)
-    n, e = (judging.as_measured(float(v), made.unit).text for v in gap[::-1])
-    made.words.append(f"off the design: north {n}, east {e} {made.unit}")
-    return judging.judge_place(gap, made.limits, own, made.unit)
-
-
-def _place_covariance(made: _Check, mark: Mark) -> np.ndarray:
-    if made.setup is None:
-        return measuring.place_covariance(made.method, mark)
-    opened = setups.opening_of(made.state.record, made.setup)
-    stand = setups.stand_of(made.state, opened, [mark.key], None)
-    return measuring.place_covariance(
-        stand.method,
-        mark,
-        occupied=stand.occupied,
-        backsight=stand.backsight,
-        station=stand.station,
-        sights=stand.leaning("oriented on"),
-    )
-
-
-def _elevation(made: _Check) -> Judgement:
-    """A hub is checked against the elevation it was set to have, else the design."""
-    mark = made.marks[0]
-    read = _given(made.asked.measured, "measured", "the elevation measured")
-    wanted = _hub_nm(made.state, made.views[0])
-    own = measuring.height_variance(made.method)
-    return judging.judge(
-        (int(read.nm) - wanted) / 1e9,
-        made.limits,
-        "e",
-        measuring.sigma(own, expected.height_variance(mark)),
-        made.unit,
-        measured=read,
-        computed=judging.as_measured(wanted / 1e9, made.unit),
-    )
-
-
-def _hub_nm(state: JobState, view: MarkView) -> int:
-    """What the top of the stake should read: as it was set, for cuts were given from it."""
-    fact = setups.set_fact(state, view)
-    if fact is not None and fact.elevation is not None:
-        return int(fact.elevation.nm)
-    return expected.height_nm(view.plan)
-
-
-def _given(value: Measured | None, field: str, what: str) -> Measured:
-    if value is None:
-        raise Refused(f"The check does not say {what}.", do="Type it.", field=field)
-    return value
-
-
-_JUDGE = {
-    "distance": _distance,
-    "diagonal": _distance,
-    "angle": _angle,
-    "position": _position,
-    "elevation": _elevation,
-    "line": _line,
-    "fit": _fit,
-}

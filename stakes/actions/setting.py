@@ -16,7 +16,7 @@ from stakes.kinds.setting import StakeSet, WayUsed
 from stakes.kinds.words import OldStake
 from stakes.models import Entry, Mark, Record
 from stakes.queries import labels, measuring
-from stakes.queries.before_setting import before_setting
+from stakes.queries.before_setting import Before, before_setting
 from stakes.queries.gates import Gate
 from stakes.queries.state import JobState, MarkView
 from stakes.queries.state_then import state_then
@@ -86,24 +86,13 @@ def set_stake(
             at=at,
             another_way=way.method if way else method,
         )
-        past, authorised = passed([*before.gates, *more_gates], passage)
-        if before.inherited:
-            past = (*past, *(f"setup: {words}" for words in before.inherited))
-            authorised = authorised or before.inherited_by
+        past, authorised = _passed(before, more_gates, passage)
         view, unit = before.view, record.length_unit
         fate = _old(view, old)
         placed = _placed(view.plan, staked or AsStaked(), unit)
         if not far:
             _refuse_far(record, view.plan, placed, at)
-        local = before.at.astimezone(record.time_zone)
-        label = labels.label_for(
-            view.plan,
-            labels.planned_row(view.plan),
-            elevation,
-            unit,
-            at=local,
-            initials=labels.initials_of(by.name),
-        )
+        label = _label(record, before, elevation, by)
         fact = StakeSet(
             mark=mark,
             setup=setup,
@@ -151,6 +140,29 @@ def set_stake(
         )
 
     return once(record, key, asked, do)[0]
+
+
+def _passed(
+    before: Before, more: Sequence[Gate], passage: Passage
+) -> tuple[tuple[str, ...], str]:
+    """The gates passed, those of its setup among them, and who authorised it."""
+    past, authorised = passed([*before.gates, *more], passage)
+    inherited = tuple(f"setup: {words}" for words in before.inherited)
+    return (*past, *inherited), authorised or before.inherited_by
+
+
+def _label(
+    record: Record, before: Before, elevation: Measured | None, by: By
+) -> labels.Label:
+    plan = before.view.plan
+    return labels.label_for(
+        plan,
+        labels.planned_row(plan),
+        elevation,
+        record.length_unit,
+        at=before.at.astimezone(record.time_zone),
+        initials=labels.initials_of(by.name),
+    )
 
 
 def _method(state: JobState, setup: uuid.UUID | None) -> str:

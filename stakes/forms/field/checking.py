@@ -8,7 +8,6 @@ from typing import Any
 
 from django import forms
 
-from stakes.actions.checking import NEEDS, TAPED, Asked
 from stakes.forms.field.asking import (
     NUMBER,
     FieldForm,
@@ -18,6 +17,7 @@ from stakes.forms.field.asking import (
 )
 from stakes.forms.field.setting import setup_words
 from stakes.queries.setups import OpenSetup
+from stakes.queries.stake_checks import NEEDS, TAPED, Asked
 from stakes.queries.taping import Taped
 
 METHODS: dict[str, tuple[str, ...]] = {

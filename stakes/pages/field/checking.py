@@ -6,7 +6,7 @@ from uuid import UUID
 
 from django.http import Http404, HttpRequest, HttpResponse
 
-from stakes.actions.checking import NEEDS, check_stakes
+from stakes.actions.checking import check_stakes
 from stakes.can import Can, needs
 from stakes.forms.field.checking import WORDS, CheckForm
 from stakes.kinds.checking import StakeChecked
@@ -16,6 +16,7 @@ from stakes.pages.field.setups import labels_of
 from stakes.pages.field.signs import row
 from stakes.pages.field.where import files, page, sent, state_of, to, visit_of
 from stakes.queries.setups import usable_setups
+from stakes.queries.stake_checks import NEEDS
 from stakes.queries.state import MarkView
 from stakes.record import reading
 
