@@ -151,7 +151,7 @@ def _about(unit: Unit, laid: Laid) -> dict[str, Any]:
         "soil": str(dig.soil) if laid.soil else "assumed 1 1/2:1, not classified",
         "soil_by": f"{laid.soil.by_whom}, {laid.soil.on}" if laid.soil else "",
         "rule": f"{asked.stake_set} set. {laid.plan.offset_reason}",
-        "issues": [i.sentence for i in laid.plan.issues],
+        "issues": [*laid.sentences, *(e.reason for e in laid.plan.no_room)],
         "caution": dig.caution,
         "limit_m": limit,
     }

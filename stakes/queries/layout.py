@@ -14,6 +14,7 @@ from geometry.layout import (
     Gridline,
     Ground,
     KeepOut,
+    Matter,
     OffsetPlan,
     RankedCheck,
     Setback,
@@ -109,6 +110,24 @@ class Laid:
         """The number of a stake on this job: the first number and those after it."""
         return str(self.asked.first_number + stake.number - 1)
 
+    @property
+    def sentences(self) -> list[str]:
+        """What must be known before issuing, with the numbers of this job; cautions
+        and ends without room are shown by themselves."""
+        odd = [s for s in self.chosen.stakes if s.differs]
+        own = [
+            issue.sentence
+            for issue in self.plan.issues
+            if issue.matter not in (Matter.EXCAVATION, Matter.NO_ROOM)
+            and not issue.sentence.startswith(("Stake ", "Stakes "))
+        ]
+        if odd:
+            listed = ", ".join(self.label(s) for s in odd)
+            own.append(
+                f"{listed}: not the building's offset. Flag it on plan, label and sheet."
+            )
+        return [*own, *self.chosen.sentences]
+
 
 def soil_of(record: Record, footprint: UUID) -> Classified | None:
     """The last classification of the soil under a footprint; None: assumed."""
@@ -201,7 +220,7 @@ def _is_in_the_way(zone: Zone, footprint: Zone) -> bool:
 
 def _keep_out(zone: Zone) -> KeepOut:
     return KeepOut(
-        name=f"{zone.sort} {zone.name}",
+        name=zone.name if zone.sort in zone.name else f"the {zone.sort} {zone.name}",
         points=np.array(zone.corners_m),
         is_area=zone.closed,
         is_structure=zone.sort in ("obstacle", "footprint"),

@@ -196,7 +196,8 @@ def test_recovered_control_that_disagrees_is_a_question_on_the_page(
     _, marks = field_job(office.record)
     page = office.get("stakes:control-recover", who="crew")
     assert "CP1, CP2," in page
-    data = {
+    looked = {f"found_{m.hex}": "not looked for" for m in marks.values()}
+    data = looked | {
         f"found_{marks['CP1'].hex}": "undisturbed",
         "distances": "CP1, CP2, 200.20\nCP1, CP3, \n",
         "rises": "BM1, BM2, 3.25",
@@ -223,8 +224,9 @@ def test_recovered_control_that_disagrees_is_a_question_on_the_page(
 def test_control_work_that_cannot_be_read_gets_a_sentence(
     office: Office, data, words
 ) -> None:
-    field_job(office.record)
-    office.refused("stakes:control-recover", data, words)
+    _, marks = field_job(office.record)
+    looked = {f"found_{m.hex}": "not looked for" for m in marks.values()}
+    office.refused("stakes:control-recover", {**looked, **data}, words)
 
 
 def test_levels_that_close_lead_to_the_draft_of_their_new_benchmark(

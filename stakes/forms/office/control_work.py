@@ -23,6 +23,7 @@ from stakes.record.lengths import Measured
 
 PAIRS_PREPARED = 28
 MOST_LINES = 300
+NOT_LOOKED_FOR = "not looked for"
 ROWS = forms.Textarea(attrs={"rows": 8, "spellcheck": "false", "autocomplete": "off"})
 T = TypeVar("T")
 
@@ -63,9 +64,9 @@ class WorkForm(KeyedForm):
                 self.add_error(name, f"Line {number}: {error}")
         return found
 
-    def pairs(self, carries: tuple[str, ...]) -> str:
-        """A line for each pair of marks that carry something, to be filled in."""
-        names = [m.label for m in self.control if m.carries in carries]
+    def pairs(self, purpose: str) -> str:
+        """A line for each pair of marks of one purpose, to be filled in."""
+        names = [m.label for m in self.control if m.purpose == purpose]
         listed = islice(combinations(names, 2), PAIRS_PREPARED)
         return "\n".join(f"{a}, {b}, " for a, b in listed)
 
@@ -85,8 +86,8 @@ class RecoverForm(WorkForm):
         for mark in self.control[:100]:
             self.fields[f"found_{mark.key.hex}"] = forms.ChoiceField(
                 label=mark.label,
-                choices=one_of(CONDITIONS, "not looked for"),
-                required=False,
+                choices=one_of([NOT_LOOKED_FOR, *CONDITIONS]),
+                initial=NOT_LOOKED_FOR,
             )
         self.fields["distances"] = forms.CharField(
             label="Distances between what is found",
@@ -94,14 +95,14 @@ class RecoverForm(WorkForm):
             "are passed over.",
             required=False,
             widget=ROWS,
-            initial=self.pairs(("both", "position")),
+            initial=self.pairs("control"),
         )
         self.fields["rises"] = forms.CharField(
             label="Levels between benchmarks",
             help_text="One a line: from, to, rise (minus for a fall).",
             required=False,
             widget=ROWS,
-            initial=self.pairs(("elevation", "both")),
+            initial=self.pairs("benchmark"),
         )
         conditions = [n for n in self.fields if n.startswith("found_")]
         self.order_fields(["key", *conditions, "distances", "rises", "method", "at"])
@@ -120,7 +121,7 @@ class RecoverForm(WorkForm):
         found = {
             uuid.UUID(hex=name.removeprefix("found_")): condition
             for name, condition in self.cleaned_data.items()
-            if name.startswith("found_") and condition
+            if name.startswith("found_") and condition != NOT_LOOKED_FOR
         }
         return {
             "found": found,

@@ -8,12 +8,10 @@ from typing import Any
 from django import forms
 
 from geometry.layout import Ground, Soil
-from geometry.units import Length
 from stakes.forms.office.parts import DayField, KeyedForm, LengthField, one_of
 from stakes.models import Record, Zone
 from stakes.queries.layout import SET_WORDS, USUAL, Asked
 from stakes.queries.tolerance import classes_of
-from stakes.record.lengths import Measured
 
 LENGTHS = {
     "offset": "Offset, at least",
@@ -52,13 +50,14 @@ class LayoutForm(forms.Form):
         self.fields["footprint"].choices = [(str(z.key), z.name) for z in zones]
         unit = record.length_unit
         for name, label in LENGTHS.items():
-            self.fields[name] = LengthField(unit=unit, label=f"{label}, {unit}")
+            self.fields[name] = LengthField(
+                unit=unit, label=f"{label}, {unit}", required=True
+            )
         self.order_fields(["footprint", *LENGTHS])
 
     def asked(self) -> Asked:
         said = self.cleaned_data
-        nothing = Measured.of(Length.parse("0", self.record.length_unit))
-        lengths = {name: said[name] or nothing for name in LENGTHS}
+        lengths = {name: said[name] for name in LENGTHS}
         return Asked(
             footprint=uuid.UUID(said["footprint"]),
             stake_set=said["stake_set"],
