@@ -55,6 +55,12 @@ class OldValueStake:
     up: Length | None = None
 
     @property
+    def is_same(self) -> bool:
+        """Computed, and no different: what changed is not what it was set by."""
+        told = [d for d in (self.north, self.east, self.up) if d is not None]
+        return bool(told) and not any(d.nanometres for d in told)
+
+    @property
     def words(self) -> str:
         parts = [
             f"{abs(float(d.text)):g} {d.unit} {words[float(d.text) < 0]}"
@@ -194,13 +200,18 @@ def _old_stakes(
         for key, fact in opened.items()
         if any(u.mark == mark and u.value not in (None, now) for u in fact.used)
     }
-    found = []
-    for view in in_order(state.marks.values()):
-        stake = view.stake
-        if stake is None or stake.setup not in old or view.plan.is_control:
-            continue
-        found.append(_differs(state, view, old[stake.setup], values))
-    return found
+    if not old:
+        return []
+    set_from = [
+        view
+        for view in state.marks.values()
+        if view.stake and view.stake.setup in old and not view.plan.is_control
+    ]
+    found = [
+        _differs(state, view, old[view.stake.setup], values)
+        for view in in_order(set_from)
+    ]
+    return [stake for stake in found if not stake.is_same]
 
 
 def _differs(

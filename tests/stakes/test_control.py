@@ -124,3 +124,19 @@ def test_control_of_another_job_gets_no_value() -> None:
             source="x",
             by=SURVEYOR,
         )
+
+
+def test_a_new_elevation_lists_no_stake_set_by_the_place_alone() -> None:
+    record, marks = field_job()
+    setup = station(record, marks)
+    set_stake(record, marks["101"], setup, after(30))
+    adopted = adopt_value(
+        record=record,
+        mark=marks["CP2"],
+        elevation=measured("500.10"),
+        source="level loop",
+        reason="levelled",
+        by=SURVEYOR,
+        at=after(600),
+    )
+    assert list(adopted.stakes) == []
