@@ -107,7 +107,8 @@ def _inside(corners: Sequence[Point]) -> Point:
     shape = Polygon(corners)
     if not shape.is_valid or shape.area == 0:
         return corners[0]
-    spot = polylabel(shape, 4.0)
+    plump = shape.area > 0.9 * shape.convex_hull.area
+    spot = shape.centroid if plump else polylabel(shape, 4.0)
     return float(spot.x), float(spot.y)
 
 

@@ -37,6 +37,8 @@ def ways_back(request: HttpRequest, job: str, mark: UUID) -> HttpResponse:
         context = {"view": view, "sign": sign_of(view, 34), "refused": str(refused)}
         return render(request, "stakes/recovery/refused.html", context)
     offered = [way for way in found.ways if way.offered]
+    # Where it stands comes first; its height is a way of its own beside that.
+    offered.sort(key=lambda way: (way.component != "position", way.rank))
     shown = next((w for w in offered if str(w.rank) == request.GET.get("way")), None)
     shown = shown or (offered[0] if offered else None)
     context = {
