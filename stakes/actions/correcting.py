@@ -19,6 +19,7 @@ LEFT_TO_THEIR_OWN_PAGES = ("job opened", "seat given", "seat ended")
 CORRECTED_BY: dict[str, Can] = {
     "planned": Can.ISSUE,
     "layout issued": Can.ISSUE,
+    "file read": Can.ISSUE,
     "superseded": Can.ISSUE,
     "retired": Can.PLAN,
     "zone drawn": Can.PLAN,

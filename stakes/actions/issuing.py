@@ -24,7 +24,9 @@ from stakes.record import By, Fact, Known, Refused, Said, append, held
 from stakes.record.append import MOST_AT_ONCE
 
 ROWS_PER_ENTRY = 1000
-MOST_ROWS = 100_000
+MOST_ROWS = 20_000
+"""Rows of one plan: issuing them keeps others waiting for a few seconds, not more."""
+
 MOST_TYPED = 1000
 
 
@@ -121,6 +123,13 @@ def keep_draft(
     data = to_data(rows)
     if known is not None:
         return _same(known, record, data)
+    if len(rows) > MOST_ROWS:
+        raise Refused(
+            f"{len(rows):,} marks are too many for one plan.",
+            do=f"Cut it in parts of at most {MOST_ROWS:,}.",
+            field="file",
+            code="too many",
+        )
     if not rows and not complained:
         raise Refused("There is no row.", do="Fill in at least one.", code="empty")
     wrong = [*complained, *complaints(rows, known_marks(record))]

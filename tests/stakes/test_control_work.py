@@ -7,15 +7,9 @@ import uuid
 
 import pytest
 
-from stakes.actions.control_work import (
-    Between,
-    Leg,
-    LevelSetup,
-    questions_of,
-    recover_control,
-    run_levels,
-    run_traverse,
-)
+from stakes.actions.levelling import LevelSetup, run_levels
+from stakes.actions.recovering import Between, questions_of, recover_control
+from stakes.actions.traversing import Leg, run_traverse
 from stakes.models import Draft, Entry, Mark
 from stakes.queries.control import disagreements
 from stakes.queries.state import job_state

@@ -16,7 +16,9 @@ from django import forms
 from geometry.cogo.closures import LEVEL_LOOP_CLASSES, TRAVERSE_CLASSES
 from geometry.errors import GeometryError
 from geometry.units import Angle, Length, Unit
-from stakes.actions.control_work import CONDITIONS, Between, Leg, LevelSetup
+from stakes.actions.levelling import LevelSetup
+from stakes.actions.recovering import CONDITIONS, Between
+from stakes.actions.traversing import Leg
 from stakes.forms.office.parts import KeyedForm, MomentField, one_of
 from stakes.models import Mark, Record
 from stakes.record.lengths import Measured

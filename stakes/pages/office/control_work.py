@@ -9,12 +9,10 @@ from django.contrib import messages
 from django.http import HttpRequest, HttpResponse
 from django.urls import reverse
 
-from stakes.actions.control_work import (
-    Worked,
-    recover_control,
-    run_levels,
-    run_traverse,
-)
+from stakes.actions.control_work import Worked
+from stakes.actions.levelling import run_levels
+from stakes.actions.recovering import recover_control
+from stakes.actions.traversing import run_traverse
 from stakes.can import Asked, Can, needs
 from stakes.forms.office.control_work import LevelsForm, RecoverForm, TraverseForm
 from stakes.pages.answer import act

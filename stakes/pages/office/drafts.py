@@ -173,7 +173,7 @@ def draft_leave(request: HttpRequest, job: str, draft: uuid.UUID) -> HttpRespons
     return HttpResponseRedirect(reverse("stakes:drafts", args=[asked.record.number]))
 
 
-@needs(Can.ISSUE)
+@needs(Can.PLAN)
 def stage_retire(request: HttpRequest, job: str) -> HttpResponse:
     asked: Asked = request.asked
     sent = request.POST if request.method == "POST" else None
