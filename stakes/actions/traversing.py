@@ -128,7 +128,15 @@ class _Solved:
     angles: BalancedAngles | None
 
 
-def _solve(ends, start, back, legs, end, closing_rad, closing_back) -> _Solved:
+def _solve(
+    ends: Mapping[uuid.UUID, Mark],
+    start: uuid.UUID,
+    back: uuid.UUID,
+    legs: Sequence[Leg],
+    end: Mark,
+    closing_rad: float | None,
+    closing_back: uuid.UUID | None,
+) -> _Solved:
     here, behind = _place(ends[start]), _place(ends[back])
     first = math.atan2(*(here - behind))
     angles = [leg.angle_rad for leg in legs]

@@ -13,6 +13,7 @@ import io
 import re
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, field
+from uuid import UUID
 
 from geometry.units import Unit
 from stakes.exchange.rows import Complaint, Row, read_row
@@ -119,7 +120,7 @@ class Unreadable(ValueError):
     """The file as a whole cannot be read; the words say why."""
 
 
-def read_points(data: bytes, answers: Answers, basis: Sequence = ()) -> Reading:
+def read_points(data: bytes, answers: Answers, basis: Sequence[UUID] = ()) -> Reading:
     """Read comma text. Raises Unreadable for what is no text, or too much of it.
 
     >>> read = read_points(b"101,1000.5,2000.25,-9999,corner", Answers(
@@ -255,7 +256,7 @@ def _take(
     cells: Sequence[str],
     columns: Sequence[str],
     answers: Answers,
-    basis: Sequence,
+    basis: Sequence[UUID],
 ) -> None:
     written, notes = _written(line, cells, columns, answers)
     # Where a comma does not separate, it may be the decimal sign.

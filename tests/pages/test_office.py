@@ -513,3 +513,19 @@ def test_every_id_is_looked_for_in_its_own_job(office: Office) -> None:
     ):
         answer = office.client("surveyor").get(office.url(name, **ids))
         assert answer.status_code == 404, name
+
+
+def test_a_foreign_mark_gets_a_value_only_from_the_surveyor(office: Office) -> None:
+    (mark,) = plan(office.record, row("F1", "1", "1", purpose="foreign"))
+    data = {"northing": "1.02", "easting": "1", "source": "tied from CP1 and CP2"}
+    office.send("stakes:value-adopt", data, mark=mark)
+    assert Mark.objects.get(key=mark).value is not None
+    answer = office.send("stakes:value-adopt", data, who="party_chief", mark=mark)
+    assert answer.status_code == 403
+
+
+def test_more_marks_than_one_plan_holds_are_refused(
+    office: Office, monkeypatch
+) -> None:
+    monkeypatch.setattr("stakes.actions.issuing.MOST_ROWS", 1)
+    office.refused("stakes:import", imported(), "too many for one plan")

@@ -59,10 +59,11 @@ def control_mark(request: HttpRequest, job: str, mark: uuid.UUID) -> HttpRespons
 @needs(Can.ADOPT)
 def value_adopt(request: HttpRequest, job: str, mark: uuid.UUID) -> HttpResponse:
     asked: Asked = request.asked
-    found = _control(asked, mark)
+    found = _control(asked, mark, also="foreign")
     sent = request.POST if request.method == "POST" else None
     form = AdoptForm(sent, record=asked.record, mark=found)
-    back = reverse("stakes:control-mark", kwargs={"job": job, "mark": mark})
+    place = "stakes:control-mark" if found.is_control else "stakes:mark"
+    back = reverse(place, kwargs={"job": job, "mark": mark})
 
     def do() -> str:
         adopt_value(record=asked.record, mark=mark, by=asked.by, **form.said())
@@ -91,9 +92,9 @@ def _lead(known: int, stakes: int) -> str:
     return f"It has {known} {'value' if known == 1 else 'values'} so far. {said}"
 
 
-def _control(asked: Asked, mark: uuid.UUID) -> Mark:
+def _control(asked: Asked, mark: uuid.UUID, also: str = "") -> Mark:
     found = Mark.objects.filter(
-        record=asked.record, key=mark, purpose__in=("control", "benchmark")
+        record=asked.record, key=mark, purpose__in=("control", "benchmark", also)
     ).first()
     if found is None:
         raise Http404
