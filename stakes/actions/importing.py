@@ -7,7 +7,7 @@ its hash, the answers, what was left out and every complaint with its line.
 from __future__ import annotations
 
 import uuid
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from pathlib import Path
 
 from django.conf import settings
@@ -25,7 +25,9 @@ from stakes.exchange.doubts import Doubt, doubts
 from stakes.exchange.rows import Complaint, Row
 from stakes.kinds.importing import FileRead
 from stakes.models import Draft, Mark, Record
+from stakes.queries.plan import Known as KnownMark
 from stakes.queries.plan import complaints, known_marks
+from stakes.queries.tolerance import classes_of, control_class
 from stakes.record import By, Fact, Refused
 
 COMPLAINTS_KEPT = 500
@@ -45,8 +47,9 @@ class ImportRefused(RowsRefused):
             f"{len(grave)} {'line needs' if len(grave) == 1 else 'lines need'} mending."
             if grave
             else "The points do not fit the job as answered.",
+            "Line",
         )
-        self.complaints = tuple(wrong)
+        self.complaints = tuple(sorted(wrong, key=lambda c: c.row))
 
 
 def import_points(
@@ -69,9 +72,11 @@ def import_points(
     """
     reading = read_file(data, answers, sheet)
     doubted = doubts(_places(reading.rows), _control_places(record))
+    known = known_marks(record)
+    rows, agreeing = _without_known_control(record, reading.rows, known)
+    reading.complain(agreeing)
     wrong = list(reading.complaints)
-    rows = reading.rows
-    together = complaints(rows, known_marks(record))
+    together = complaints(rows, known)
     grave = any(c.grave for c in [*wrong, *together])
     if (doubted and not doubts_seen) or (grave and not leave_out):
         raise ImportRefused([*wrong, *together], doubted, reading)
@@ -113,7 +118,7 @@ def _about(
     doubted: Sequence[Doubt],
     together: Sequence[Complaint],
 ) -> dict:
-    said = [c.sentence.replace("Row", "Line") for c in [*reading.complaints, *together]]
+    said = [c.said("Line") for c in [*reading.complaints, *together]]
     said = [*(f"Doubted and confirmed: {d.sentence}" for d in doubted), *said]
     more = len(said) - COMPLAINTS_KEPT + reading.more_complaints
     kept = said[:COMPLAINTS_KEPT]
@@ -169,6 +174,38 @@ def import_file(sha256: str) -> Path:
     if len(sha256) != 64 or set(sha256) - set("0123456789abcdef"):
         raise ValueError("Not a SHA-256 in hex.")
     return Path(settings.DATA_DIR) / "imports" / sha256[:2] / sha256
+
+
+def _without_known_control(
+    record: Record, rows: Sequence[Row], known: Mapping[str, KnownMark]
+) -> tuple[list[Row], list[Complaint]]:
+    """Files of stakes often carry the control too: what agrees with the job is left
+    out with a note, and what does not stays to be complained of."""
+    limit = control_class(classes_of(record)).position
+    most = int(limit.nm) if limit else 0
+    kept, notes = [], []
+    for row in rows:
+        mark = known.get(row.label)
+        if mark is None or mark.purpose in ("stake", row.purpose):
+            kept.append(row)
+        elif _apart_nm(row, mark) <= most:
+            what = f"{row.label} is {mark.purpose} on this job and agrees; left out."
+            notes.append(Complaint(row.row, "label", what, grave=False))
+        else:
+            kept.append(row)
+    return kept, notes
+
+
+def _apart_nm(row: Row, mark: KnownMark) -> int:
+    """The largest difference in a coordinate that both have."""
+    pairs = (
+        (row.northing, mark.northing_nm),
+        (row.easting, mark.easting_nm),
+        (row.elevation, mark.elevation_nm),
+    )
+    return max(
+        (abs(int(now.nm) - int(was)) for now, was in pairs if now and was), default=0
+    )
 
 
 def _places(rows: Sequence[Row]) -> dict[str, tuple[float, float]]:

@@ -33,13 +33,15 @@ MOST_TYPED = 1000
 class RowsRefused(Refused):
     """Rows that cannot stand; `complaints` say why, row by row."""
 
-    def __init__(self, wrong: Sequence[Complaint], what: str = "") -> None:
+    def __init__(
+        self, wrong: Sequence[Complaint], what: str = "", noun: str = "Row"
+    ) -> None:
         self.complaints = tuple(wrong)
         grave = sum(c.grave for c in wrong)
         first = next(c for c in wrong if c.grave)
         super().__init__(
             what or f"{grave} {'row needs' if grave == 1 else 'faults need'} mending.",
-            where=first.sentence,
+            where=first.said(noun),
             do="Nothing was kept.",
             code="rows",
         )

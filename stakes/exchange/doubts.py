@@ -73,7 +73,7 @@ def _shared(names: Sequence[str], theirs: np.ndarray, ours: np.ndarray) -> list[
             return [
                 Doubt(
                     name,
-                    f"{names[0]} and {len(names) - 1} more fit the job with {words}.",
+                    f"{_named(names)} the job with {words}.",
                     words,
                 )
             ]
@@ -85,6 +85,12 @@ def _shared(names: Sequence[str], theirs: np.ndarray, ours: np.ndarray) -> list[
             "or another mark of that number?",
         )
     ]
+
+
+def _named(names: Sequence[str]) -> str:
+    if len(names) == 1:
+        return f"{names[0]} fits"
+    return f"{names[0]} and {len(names) - 1} more fit"
 
 
 def _survey_feet(

@@ -52,7 +52,11 @@ class Complaint(msgspec.Struct, frozen=True):
 
     @property
     def sentence(self) -> str:
-        return f"Row {self.row}: {self.what}" if self.row else self.what
+        return self.said("Row")
+
+    def said(self, noun: str) -> str:
+        """What is wrong and where: in a row of a form, in a line of a file."""
+        return f"{noun} {self.row}: {self.what}" if self.row else self.what
 
 
 class Row(msgspec.Struct, frozen=True, kw_only=True):

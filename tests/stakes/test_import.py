@@ -206,3 +206,17 @@ def test_ten_thousand_lines_are_read_in_a_few_seconds() -> None:
     read = read_points(data.encode(), FEET)
     assert len(read.rows) == 10_000
     assert time.perf_counter() - began < 10
+
+
+def test_control_that_agrees_with_the_job_is_left_out_with_a_note() -> None:
+    record = make_record()
+    plan(record, row("CP1", "1000", "2000", purpose="control"))
+    draft = brought(record, "CP1,1000.005,2000,\n101,1050,2100,1\n")
+    assert [r["label"] for r in draft.rows] == ["101"]
+    assert (
+        "Line 1: CP1 is control on this job and agrees; left out."
+        in (draft.about["complaints"])
+    )
+    with pytest.raises(ImportRefused) as refused:
+        brought(record, "CP1,1000.2,2000,\n102,1050,2100,1\n")
+    assert "is control on this job" in refused.value.complaints[1].what

@@ -24,6 +24,8 @@ _HASH = re.compile(r"[0-9a-f]{64}")
 
 class ImportForm(KeyedForm):
     is_multipart = True
+    kept_as = ("", "")
+    """Hash and name of a file kept until its answers are mended."""
 
     file = forms.FileField(
         label="File of comma text",

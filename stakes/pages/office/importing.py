@@ -67,8 +67,9 @@ def _draft(asked: Asked, form: ImportForm) -> Draft:
             key=said["key"],
         )
     except ImportRefused as refused:
-        keep_import(data, refused.reading.sha256)
-        form.kept_as = (refused.reading.sha256, name)
+        if not said["text"].strip():
+            keep_import(data, refused.reading.sha256)
+            form.kept_as = (refused.reading.sha256, name)
         raise
 
 
