@@ -29,7 +29,13 @@ from stakes.models.record import (
 from stakes.record import folds, merkle
 from stakes.record.by import By, Known, TimeKnown
 from stakes.record.canonical import canonical, moment_text, sha256_hex
-from stakes.record.kinds import Fact, MarkLink, MatterLink, facts_as_data
+from stakes.record.kinds import (
+    Fact,
+    MarkLink,
+    MatterLink,
+    fact_from,
+    facts_as_data,
+)
 from stakes.record.refused import Refused
 from stakes.record.said import Said
 
@@ -117,6 +123,8 @@ class _Writing:
         said_hash = _said_hash(said)
         if known := self._already(said, said_hash):
             return known
+        # What cannot be read back must never be written: nothing takes it out again.
+        fact_from(said.fact.KIND, facts_as_data(said.fact))
         at = _moment(said, self.now)
         target = self._target(said)
         links, matters = self._concerns(said, target)

@@ -122,6 +122,15 @@ def test_what_lies_in_the_future_is_refused_with_a_sentence() -> None:
     assert record.entries.count() == 1
 
 
+def test_a_fact_that_could_not_be_read_back_is_never_written() -> None:
+    record = make_record()
+    [mark] = plan(record, row("101", "1", "2"))
+    fact = StakeSet(mark=mark, old="eaten by a bear")  # type: ignore[arg-type]
+    with pytest.raises(Refused, match="cannot be read"):
+        append(record, fact, by=CHIEF)
+    assert record.entries.count() == 1
+
+
 def test_the_clock_of_the_record_never_runs_backwards() -> None:
     record = make_record()
     ahead = timezone.now() + timedelta(days=1)
