@@ -1,4 +1,4 @@
-"""Retire marks: their stage is done, or their removal was authorised."""
+"""Retire marks whose stage is done; supersede those the design has left behind."""
 
 from __future__ import annotations
 
@@ -8,8 +8,8 @@ from datetime import datetime
 
 from stakes.actions.once import Act, once
 from stakes.actions.told import short
-from stakes.kinds.planning import MarksRetired
-from stakes.models import Entry, Mark, Record
+from stakes.kinds.planning import MarksRetired, MarksSuperseded
+from stakes.models import Entry, Mark, Record, Sheet
 from stakes.record import By, Known, Refused, Said, append
 
 MOST_MARKS = 1000
@@ -50,6 +50,44 @@ def retire_marks(
             )
             for n, fact in enumerate(facts)
         ]
+        return append(record, said, by=by, act=act)
+
+    return once(record, key, asked, do)[0]
+
+
+def supersede_marks(
+    *,
+    record: Record,
+    marks: Sequence[uuid.UUID],
+    reason: str,
+    by: By,
+    sheet: uuid.UUID | None = None,
+    at: datetime | None = None,
+    key: uuid.UUID | None = None,
+) -> Entry:
+    """Say that stakes which still stand no longer mark the current design.
+
+    Marks issued again in another place supersede their stakes by that already; this is
+    for those a sheet takes away, or whose new place is not known yet.
+    """
+    key = key or uuid.uuid4()
+    asked = {k: v for k, v in locals().items() if k not in ("record", "by", "key")}
+
+    def do(act: Act) -> list[Entry]:
+        if not marks:
+            raise Refused("No mark is named.", do="Name the marks.", field="marks")
+        if not reason.strip():
+            raise Refused(
+                "The reason is missing.", do="Say what changed.", field="reason"
+            )
+        if sheet is not None and not Sheet.objects.filter(record=record, key=sheet):
+            raise Refused("There is no such sheet on this job.", field="sheet")
+        fact = MarksSuperseded(
+            listed=tuple(_listed(record, marks, "")),
+            sheet=sheet,
+            reason=short(reason, "reason"),
+        )
+        said = Said(fact=fact, at=at, known=Known.DECIDED, key=key)
         return append(record, said, by=by, act=act)
 
     return once(record, key, asked, do)[0]

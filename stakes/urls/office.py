@@ -39,6 +39,7 @@ CONTROL = [
     path("control/recover/", control_work.recover, name="control-recover"),
     path("control/traverse/", control_work.traverse, name="control-traverse"),
     path("control/levels/", control_work.levels, name="control-levels"),
+    path("control/answer/", control.doubt_answer, name="doubt-answer"),
     path("control/<uuid:mark>/", control.control_mark, name="control-mark"),
     path("control/<uuid:mark>/adopt/", control.value_adopt, name="value-adopt"),
 ]
@@ -48,6 +49,11 @@ SHEETS = [
     path("sheets/<uuid:sheet>/", sheets.sheet, name="sheet"),
     path("sheets/<uuid:sheet>/file/", sheets.sheet_file, name="sheet-file"),
     path("sheets/<uuid:sheet>/read/", sheets.sheet_read, name="sheet-read"),
+    path(
+        "sheets/<uuid:sheet>/supersede/",
+        sheets.sheet_supersede,
+        name="sheet-supersede",
+    ),
     path("questions/ask/", sheets.question_ask, name="question-ask"),
     path(
         "questions/<uuid:question>/answer/",

@@ -529,3 +529,23 @@ def test_more_marks_than_one_plan_holds_are_refused(
 ) -> None:
     monkeypatch.setattr("stakes.actions.issuing.MOST_ROWS", 1)
     office.refused("stakes:import", imported(), "too many for one plan")
+
+
+def test_a_sheet_supersedes_what_it_takes_away(office: Office) -> None:
+    plan(office.record, row("101", "1", "1"))
+    data = {"number": "A-1", "revision": "2", "status": "preliminary", "touched": "101"}
+    office.send("stakes:sheet-add", data)
+    sheet = Sheet.objects.get().key
+    assert 'value="101"' in office.get("stakes:sheet-supersede", sheet=sheet)
+    said = {"marks": "101", "reason": "wall left out"}
+    assert office.send("stakes:sheet-supersede", said, sheet=sheet).status_code == 302
+    said = {"marks": "999", "reason": "x"}
+    office.refused("stakes:sheet-supersede", said, "There is no mark", sheet=sheet)
+
+
+def test_a_doubt_is_answered_in_writing_by_the_surveyor_alone(office: Office) -> None:
+    field_job(office.record)
+    data = {"marks": "CP1", "components": "pe", "reason": "the hub is firm"}
+    assert office.send("stakes:doubt-answer", data, who="manager").status_code == 403
+    assert office.send("stakes:doubt-answer", data).status_code == 302
+    office.refused("stakes:doubt-answer", {**data, "marks": "X9"}, "no mark X9")

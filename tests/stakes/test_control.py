@@ -4,6 +4,8 @@ from __future__ import annotations
 
 import pytest
 
+from stakes.actions.answering import answer_doubt
+from stakes.actions.condition import see_marks
 from stakes.actions.control import adopt_value
 from stakes.models import Entry, Mark
 from stakes.queries.control import control_lines, values_of
@@ -140,3 +142,22 @@ def test_a_new_elevation_lists_no_stake_set_by_the_place_alone() -> None:
         at=after(600),
     )
     assert list(adopted.stakes) == []
+
+
+def test_the_surveyor_answers_a_doubt_in_writing_and_it_is_lifted() -> None:
+    record, marks = field_job()
+    see_marks(
+        record=record,
+        marks=[marks["CP1"]],
+        condition="leaning",
+        by=SURVEYOR,
+        at=after(30),
+    )
+    assert job_state(record).by_label["CP1"].trust.trust == "in question"
+    said = {"record": record, "marks": [marks["CP1"]], "by": SURVEYOR}
+    with pytest.raises(Refused, match="reason"):
+        answer_doubt(reason=" ", **said)
+    answer_doubt(reason="only the guard leans, the hub is firm", at=after(40), **said)
+    assert job_state(record).by_label["CP1"].trust.trust == "checked"
+    with pytest.raises(Refused, match="which doubt"):
+        answer_doubt(record=record, reason="x", by=SURVEYOR)

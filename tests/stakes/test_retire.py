@@ -6,10 +6,12 @@ import uuid
 
 import pytest
 
-from stakes.actions.retiring import retire_marks
+from stakes.actions.retiring import retire_marks, supersede_marks
+from stakes.actions.sheets import receive_sheet
 from stakes.models import Entry, Mark
+from stakes.queries.state import job_state
 from stakes.record import Refused
-from tests.builders import SURVEYOR, make_record, plan, row
+from tests.builders import SURVEYOR, after, make_record, plan, row, set_stake
 
 pytestmark = pytest.mark.django_db
 
@@ -40,3 +42,34 @@ def test_marks_of_another_job_are_not_retired() -> None:
         retire_marks(record=here, marks=[mark], by=SURVEYOR)
     with pytest.raises(Refused, match="what is retired"):
         retire_marks(record=here, by=SURVEYOR)
+
+
+def test_a_stake_the_design_left_behind_is_superseded_with_its_sheet() -> None:
+    record = make_record()
+    (mark,) = plan(record, row("1", "1", "1"))
+    set_stake(record, mark, None, after(10))
+    sheet = receive_sheet(
+        record=record,
+        number="A-1",
+        revision="2",
+        status="for construction",
+        by=SURVEYOR,
+        at=after(20),
+    )
+    entry = supersede_marks(
+        record=record,
+        marks=[mark],
+        sheet=sheet,
+        reason="wall left out",
+        by=SURVEYOR,
+        at=after(30),
+    )
+    assert entry.kind == "superseded"
+    assert job_state(record).marks[mark].stake.superseded
+    for more, words in (({"marks": []}, "No mark"), ({"reason": " "}, "reason")):
+        with pytest.raises(Refused, match=words):
+            supersede_marks(
+                record=record,
+                by=SURVEYOR,
+                **{"marks": [mark], "reason": "wall left out", **more},
+            )

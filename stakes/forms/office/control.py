@@ -1,4 +1,4 @@
-"""The form that adopts a value for a control mark."""
+"""Forms that adopt a value for a control mark, and answer a doubt in writing."""
 
 from __future__ import annotations
 
@@ -7,8 +7,35 @@ from typing import Any
 
 from django import forms
 
-from stakes.forms.office.parts import DayField, KeyedForm, LengthField, sheet_choices
+from stakes.forms.office.parts import (
+    DayField,
+    KeyedForm,
+    LengthField,
+    MarksField,
+    sheet_choices,
+)
 from stakes.models import Mark, Record
+
+
+class AnswerDoubtForm(KeyedForm):
+    """Why marks in question may be relied on all the same."""
+
+    components = forms.ChoiceField(
+        label="For",
+        choices=[
+            ("pe", "position and elevation"),
+            ("p", "position"),
+            ("e", "elevation"),
+        ],
+    )
+    reason = forms.CharField(
+        label="Reason", max_length=500, widget=forms.Textarea(attrs={"rows": 3})
+    )
+
+    def __init__(self, data: Any = None, *, record: Record, **kwargs: Any) -> None:
+        super().__init__(data, **kwargs)
+        self.fields["marks"] = MarksField(record=record, label="Marks")
+        self.order_fields(["key", "marks", "components", "reason"])
 
 
 class AdoptForm(KeyedForm):

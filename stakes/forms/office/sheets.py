@@ -81,6 +81,17 @@ class ReadForm(KeyedForm):
         self.order_fields(["key", "sorted_to", "changes_nothing", "remark"])
 
 
+class SupersedeForm(KeyedForm):
+    """Stakes that no longer mark the design because of a sheet."""
+
+    reason = forms.CharField(label="What changed", max_length=120)
+
+    def __init__(self, data: Any = None, *, record: Record, **kwargs: Any) -> None:
+        super().__init__(data, **kwargs)
+        self.fields["marks"] = MarksField(record=record, label="Marks")
+        self.order_fields(["key", "marks", "reason"])
+
+
 class QuestionForm(KeyedForm):
     words = forms.CharField(label="Question", max_length=1000, widget=TEXT)
     to_whom = forms.CharField(label="To whom", max_length=120)

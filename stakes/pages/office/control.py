@@ -9,9 +9,10 @@ from django.shortcuts import render
 from django.urls import reverse
 from django.utils import timezone
 
+from stakes.actions.answering import answer_doubt
 from stakes.actions.control import adopt_value
 from stakes.can import Asked, Can, needs
-from stakes.forms.office.control import AdoptForm
+from stakes.forms.office.control import AdoptForm, AnswerDoubtForm
 from stakes.models import Mark
 from stakes.pages.answer import act
 from stakes.pages.job.marks import row
@@ -79,6 +80,32 @@ def value_adopt(request: HttpRequest, job: str, mark: uuid.UUID) -> HttpResponse
         title=f"Adopt a value for {found.label}",
         lead=_lead(known, len(set_on_old_value(asked.record, mark))),
         verb="Adopt it",
+        back=back,
+    )
+
+
+@needs(Can.ADOPT)
+def doubt_answer(request: HttpRequest, job: str) -> HttpResponse:
+    """The surveyor answers in writing why marks in question may be relied on."""
+    asked: Asked = request.asked
+    sent = request.POST if request.method == "POST" else None
+    wanted = {"marks": request.GET.get("marks", "")[:500]}
+    form = AnswerDoubtForm(sent, record=asked.record, initial=wanted)
+    back = reverse("stakes:control", kwargs={"job": job})
+
+    def do() -> str:
+        answer_doubt(record=asked.record, by=asked.by, **form.cleaned_data)
+        return back
+
+    return act(
+        request,
+        form,
+        "stakes/office/form.html",
+        do,
+        done="Answered. The doubt stays readable beside it.",
+        title="Answer a doubt in writing",
+        lead="A passing check is better. This is for what cannot be checked any more.",
+        verb="Answer it",
         back=back,
     )
 

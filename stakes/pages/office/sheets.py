@@ -17,6 +17,7 @@ from stakes.actions.questions import (
     give_direction,
     settle_direction,
 )
+from stakes.actions.retiring import supersede_marks
 from stakes.actions.sheets import file_of, read_sheet, receive_sheet
 from stakes.can import Asked, Can, needs
 from stakes.forms.office.sheets import (
@@ -26,6 +27,7 @@ from stakes.forms.office.sheets import (
     ReadForm,
     SettleForm,
     SheetForm,
+    SupersedeForm,
 )
 from stakes.models import Direction, Question, Sheet
 from stakes.pages.answer import act
@@ -110,6 +112,34 @@ def sheet_read(request: HttpRequest, job: str, sheet: uuid.UUID) -> HttpResponse
         lead="Which marks does it touch? They wait until the plan is issued from it.",
         verb="I read it",
         done="Noted who read it.",
+    )
+
+
+@needs(Can.ISSUE)
+def sheet_supersede(request: HttpRequest, job: str, sheet: uuid.UUID) -> HttpResponse:
+    asked: Asked = request.asked
+    row = _one(Sheet, asked, sheet)
+    lines = {line.sheet.key: line for line in sheet_lines(asked.record)}
+    touched = ", ".join(label for _, label in lines[sheet].marks)
+    form = SupersedeForm(
+        _sent(request), record=asked.record, initial={"marks": touched}
+    )
+
+    def do() -> str:
+        supersede_marks(
+            record=asked.record, sheet=sheet, by=asked.by, **form.cleaned_data
+        )
+        return reverse("stakes:sheet", kwargs={"job": job, "sheet": sheet})
+
+    return _form(
+        request,
+        form,
+        do,
+        title=f"What {row} takes away",
+        lead="Stakes that still stand and no longer mark the design. They become tasks "
+        "to be pulled; marks that only moved are issued again instead.",
+        verb="They are superseded",
+        done="Superseded. The stakes are to be pulled.",
     )
 
 
