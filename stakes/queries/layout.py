@@ -23,28 +23,44 @@ from geometry.layout import (
     StakeSet,
     frame_set,
     minimal_set,
+    near_and_far,
     plain_set,
     plan_offsets,
     rank_checks,
     robust_set,
     setback_clearance,
 )
+from geometry.layout.stakes import numbered
 from geometry.units import Length, Unit
 from stakes.kinds.importing import SoilClassified
 from stakes.models import Record, Zone
 from stakes.record import Refused, reading
 from stakes.record.lengths import Measured
 
+
+def pairs_set(plan: OffsetPlan) -> StakeSet:
+    """A near and a far stake at each end of every line, a step apart, where free."""
+    step = plan.scene.rules.step_m
+    far = [s for line in plan.lines for s in near_and_far(plan, line.id, step)]
+    e, n = plan.footprint.mean(axis=0)
+    stakes = numbered([*plan.stakes, *far], (float(e), float(n)))
+    lacking = len(plan.stakes) - len(far)
+    words = (f"{lacking} ends have no room for a far stake.",) if lacking > 0 else ()
+    return StakeSet("near and far", stakes, plain_set(plan).unserved, words)
+
+
 SETS: dict[str, Callable[[OffsetPlan], StakeSet]] = {
     "plain": plain_set,
     "minimal": minimal_set,
     "robust": robust_set,
+    "pairs": pairs_set,
     "frame": frame_set,
 }
 SET_WORDS = {
     "plain": "plain: a stake at both ends of every wall line",
     "minimal": "minimal: one stake where two lines meet",
     "robust": "robust: a spare on every line",
+    "pairs": "near and far: two stakes at each end of a line",
     "frame": "frame: the smallest enclosing rectangle",
 }
 USUAL = {
@@ -237,7 +253,11 @@ def _gridline(zone: Zone) -> Gridline:
 
 
 def _setback(zone: Zone, zones: Sequence[Zone]) -> Setback | None:
-    lines = [z for z in zones if z.sort == "setback" and z.closed]
+    """How far the footprint stays inside the setback line; without one, inside the
+    property line."""
+    closed = [z for z in zones if z.closed]
+    lines = [z for z in closed if z.sort == "setback"]
+    lines = lines or [z for z in closed if z.sort == "property"]
     if not lines:
         return None
     return setback_clearance(

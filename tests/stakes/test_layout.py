@@ -120,11 +120,25 @@ def test_a_layout_kept_checked_and_issued_says_how_it_was_placed() -> None:
     assert "not for digging" in limit.words
 
 
-@pytest.mark.parametrize("name, more", [("minimal", 8), ("robust", 12), ("frame", 4)])
-def test_other_sets_of_stakes_are_offered(name: str, more: int) -> None:
+@pytest.mark.parametrize(
+    "name, least, most",
+    [("minimal", 4, 8), ("robust", 9, 16), ("pairs", 16, 16), ("frame", 4, 4)],
+)
+def test_other_sets_of_stakes_are_offered(name: str, least: int, most: int) -> None:
     record = make_record()
     laid = lay_out(record, asked(zone(record), stake_set=name))
-    assert len(laid.chosen.stakes) <= more
+    assert least <= len(laid.chosen.stakes) <= most
+    labels = [laid.label(s) for s in laid.chosen.stakes]
+    assert len(set(labels)) == len(labels)
+
+
+def test_the_footprint_is_measured_against_its_setback() -> None:
+    record = make_record()
+    footprint = zone(record)
+    zone(record, "990,1990\n990,2070\n1045,2070\n1045,1990", "setback", "setback")
+    laid = lay_out(record, asked(footprint))
+    assert laid.setback.spare_m == pytest.approx(5 * 0.3048)
+    assert laid.setback.verdict == "pass"
 
 
 @pytest.mark.parametrize(
