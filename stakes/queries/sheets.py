@@ -2,12 +2,17 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 from dataclasses import dataclass
 from uuid import UUID
 
+from geometry.units import Length, Unit
+from stakes.kinds.planning import MarksPlanned, PlannedMark
 from stakes.models import Direction, Mark, Question, Record, Sheet
 from stakes.queries.drawing import natural
+from stakes.record import reading
+from stakes.record.lengths import Measured
 
 
 @dataclass(frozen=True, slots=True)
@@ -97,3 +102,45 @@ def settled(record: Record) -> tuple[list[Question], list[Direction]]:
         list(asked.order_by("-answered_at")[:100]),
         list(given.order_by("-settled_at")[:100]),
     )
+
+
+@dataclass(frozen=True, slots=True)
+class MovedWith:
+    """A mark that was issued in another place from a sheet: by how much, and when."""
+
+    mark: UUID
+    label: str
+    across: Length | None
+    up: Length | None
+    number: int
+
+
+def moved_with(record: Record, sheet: UUID) -> list[MovedWith]:
+    """What a sheet moved: each mark issued anew from it, beside its place before."""
+    unit = record.length_unit
+    before: dict[UUID, PlannedMark] = {}
+    found = []
+    for said in reading.entries(record, kinds=[MarksPlanned.KIND]):
+        assert isinstance(said.fact, MarksPlanned)
+        for row in said.fact.rows:
+            was = before.get(row.mark)
+            if row.moved and was is not None and sheet in row.basis:
+                found.append(_moved(row, was, said.number, unit))
+            before[row.mark] = row
+    return sorted(found, key=lambda m: natural(m.label))
+
+
+def _moved(row: PlannedMark, was: PlannedMark, number: int, unit: Unit) -> MovedWith:
+    north = _less(row.northing, was.northing)
+    east = _less(row.easting, was.easting)
+    up = _less(row.elevation, was.elevation)
+    across = None
+    if north is not None and east is not None:
+        far = math.hypot(north, east) / 1e9
+        across = Length.from_metres(far, unit, 3)
+    rise = None if up is None else Length.from_nanometres(up, unit, 3)
+    return MovedWith(row.mark, row.label, across, rise, number)
+
+
+def _less(now: Measured | None, was: Measured | None) -> int | None:
+    return None if now is None or was is None else int(now.nm) - int(was.nm)

@@ -11,7 +11,9 @@ from stakes.actions.importing import ImportRefused, import_points
 from stakes.actions.issuing import check_plan, issue_plan
 from stakes.exchange.comma import MOST_LINES, ORDERS, Answers, Unreadable, read_points
 from stakes.exchange.doubts import doubts
+from stakes.exchange.writing import comma_text
 from stakes.models import Draft, Entry, Mark
+from stakes.queries.state import job_state
 from stakes.record import Refused
 from tests.builders import CHIEF, SURVEYOR, make_record, plan, row
 
@@ -220,3 +222,18 @@ def test_control_that_agrees_with_the_job_is_left_out_with_a_note() -> None:
     with pytest.raises(ImportRefused) as refused:
         brought(record, "CP1,1000.2,2000,\n102,1050,2100,1\n")
     assert "is control on this job" in refused.value.complaints[1].what
+
+
+def test_what_is_exported_is_read_back_as_it_was() -> None:
+    record = make_record()
+    plan(
+        record,
+        row("007", "1050.5", "2100.25", "498.123", sort='corner, "east"'),
+        row("CP1", "1000", "2000", purpose="control", carries="position"),
+    )
+    text = comma_text(job_state(record))
+    assert "\r\n" in text
+    read = read_points(text.encode(), Answers(Unit.FOOT))
+    found = {r.label: (r.northing.nm, r.easting.nm) for r in read.rows}
+    marks = Mark.objects.values_list("label", "northing_nm", "easting_nm")
+    assert found == {label: (n, e) for label, n, e in marks}

@@ -23,7 +23,7 @@ from stakes.actions.sheets import (
 )
 from stakes.models import Entry, Mark, Sheet
 from stakes.queries import held_by
-from stakes.queries.sheets import held, sheet_lines
+from stakes.queries.sheets import held, moved_with, sheet_lines
 from stakes.record import Refused
 from tests.builders import SURVEYOR, after, make_record, plan, row
 
@@ -147,3 +147,12 @@ def test_a_form_sent_twice_receives_one_sheet(job) -> None:
     key = uuid.uuid4()
     assert received(record, key=key) == received(record, key=key)
     assert Sheet.objects.count() == 1
+
+
+def test_a_sheet_says_what_it_moved_and_by_how_much(job) -> None:
+    record, (one, _) = job
+    sheet = received(record)
+    again = row("101", "1.30", "1.40", mark=one, moved=True, basis=(sheet,))
+    plan(record, again, at=after(90))
+    (moved,) = moved_with(record, sheet)
+    assert (moved.label, moved.across.text, moved.up) == ("101", "0.500", None)

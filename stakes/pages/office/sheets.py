@@ -31,7 +31,7 @@ from stakes.forms.office.sheets import (
 )
 from stakes.models import Direction, Question, Sheet
 from stakes.pages.answer import act
-from stakes.queries.sheets import held, settled, sheet_lines
+from stakes.queries.sheets import held, moved_with, settled, sheet_lines
 
 
 @needs(Can.READ_RECORD)
@@ -56,7 +56,11 @@ def sheet(request: HttpRequest, job: str, sheet: uuid.UUID) -> HttpResponse:
     lines = {line.sheet.key: line for line in sheet_lines(request.asked.record)}
     if sheet not in lines:
         raise Http404
-    context = {"line": lines[sheet], "sheet": lines[sheet].sheet}
+    context = {
+        "line": lines[sheet],
+        "sheet": lines[sheet].sheet,
+        "moved": moved_with(request.asked.record, sheet),
+    }
     return render(request, "stakes/office/sheet.html", context)
 
 
