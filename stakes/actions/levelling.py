@@ -100,11 +100,7 @@ def run_levels(
             sort=sort,
             compared=(_misclosure(record, first, last, run, passed), *compared),
             closure=closure + (same if first.key == last.key else ""),
-            results=tuple(
-                f"{row.label}: {row.elevation.text} {row.elevation.unit}"
-                for row in new
-                if row.elevation
-            ),
+            results=(*_as_measured(setups), *_adjusted(setups, run, record)),
             method=short(f"{by_rule} {method}", "method", 300),
             occasion=occasion,
         )
@@ -112,6 +108,23 @@ def run_levels(
 
     entry = once(record, key, asked, do)[0]
     return worked(entry, draft_of(record, new, sort, key, by))
+
+
+def _as_measured(setups: Sequence[LevelSetup]) -> list[str]:
+    """The rod readings as they were written in the field."""
+    return [
+        f"Measured to {s.to}: back {s.back.text}, fore {s.fore.text} {s.fore.unit}"
+        + (f", length {s.length.text} {s.length.unit}" if s.length else "")
+        for s in setups
+    ]
+
+
+def _adjusted(setups: Sequence[LevelSetup], run: LevelRun, record: Record) -> list[str]:
+    unit = record.length_unit
+    return [
+        f"Adjusted {s.to}: {computed_length(float(z), unit).text} {unit}"
+        for s, z in zip(setups[:-1], run.elevations_m[1:-1], strict=True)
+    ]
 
 
 def _section_lengths(setups: Sequence[LevelSetup]) -> list[float]:

@@ -25,7 +25,7 @@ from geometry.cogo.traversing import (
     traverse,
 )
 from geometry.errors import GeometryError
-from geometry.units import Length, Unit
+from geometry.units import Length, Unit, angle_text
 from stakes.actions.control_work import (
     Worked,
     by_label_of,
@@ -112,7 +112,10 @@ def run_traverse(
             sort="traverse",
             compared=tuple(compared),
             closure=_traverse_words(solved, closures, record.length_unit),
-            results=tuple(_coordinates(record, places[:-1], passed)),
+            results=(
+                *_as_measured(legs, closing_angle_rad),
+                *_coordinates(record, places[:-1], passed),
+            ),
             method=short(f"{chosen.name}, {chosen.source}. {method}", "method", 300),
             occasion=occasion,
         )
@@ -217,10 +220,23 @@ def _placed(record: Record, mark: Mark, place: np.ndarray) -> list[Compared]:
     return rows
 
 
+def _as_measured(legs: Sequence[Leg], closing_rad: float | None) -> list[str]:
+    """The legs as they were written in the field, so that a stranger can run it again."""
+    said = [
+        f"Measured to {leg.to}: {leg.angle_text or angle_text(leg.angle_rad)}, "
+        f"{leg.distance.text} {leg.distance.unit}"
+        for leg in legs
+    ]
+    if closing_rad is not None:
+        said.append(f"Measured, closing angle: {angle_text(closing_rad)}")
+    return said
+
+
 def _coordinates(record: Record, places: Placed, passed: bool) -> list[str]:
+    """Northing and easting of the marks on the way, after balancing."""
     unit = record.length_unit
     said = [
-        f"{leg.to}: {computed_length(float(place[1]), unit).text}, "
+        f"Balanced {leg.to}: {computed_length(float(place[1]), unit).text}, "
         f"{computed_length(float(place[0]), unit).text}"
         for leg, place in places
     ]

@@ -112,6 +112,7 @@ def test_a_traverse_that_closes_drafts_its_new_marks() -> None:
     assert "pass" in work.fact.closure
     assert [r["label"] for r in work.draft.rows] == ["T1", "T2"]
     assert work.draft.rows[0]["northing"]["text"] == "1200.0000"
+    assert work.fact.results[0] == "Measured to CP4: 90°00'00\", 200.00 ft"
     assert [c.verdict for c in work.fact.compared] == ["pass", "pass"]
     assert not Mark.objects.filter(label="T1").exists()
 
@@ -157,6 +158,11 @@ def test_a_level_run_between_benchmarks_closes_and_shares_its_misclosure() -> No
     record, marks = field_job()
     work = levelled(record, marks, "4.254")
     assert "Misses by -0.0040 ft" in work.fact.closure
+    assert work.fact.results == (
+        "Measured to NEW: back 5.00, fore 3.50 ft",
+        "Measured to BM2: back 6.00, fore 4.254 ft",
+        "Adjusted NEW: 501.5020 ft",
+    )
     assert work.draft.rows[0]["elevation"]["text"] == "501.5020"
     assert work.draft.rows[0]["purpose"] == "benchmark"
 
