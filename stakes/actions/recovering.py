@@ -91,28 +91,35 @@ def recover_control(
 def questions_of(
     compared: Sequence[Compared], names: Mapping[uuid.UUID, str]
 ) -> list[str]:
-    """What disagrees, and which marks every disagreement names: never one blamed where
-    two explain it."""
-    failed = [c for c in compared if c.verdict == "fail"]
+    """What disagrees, and which marks explain it: never one blamed where two do.
+
+    Distances and rises are told apart, for a mark may have sunk where it stands.
+    """
+    said = []
+    for quantity in dict.fromkeys(c.quantity for c in compared):
+        failed = [c for c in compared if (c.quantity, c.verdict) == (quantity, "fail")]
+        said += [
+            f"{names[c.from_mark]} to {names[c.to_mark]}: {quantity} differs by "
+            f"{c.difference.text} {c.difference.unit}. Not averaged: a question."
+            for c in failed
+            if c.to_mark is not None and c.difference is not None
+        ]
+        said += _explained(failed, names)
+    return said
+
+
+def _explained(failed: Sequence[Compared], names: Mapping[uuid.UUID, str]) -> list[str]:
     if not failed:
         return []
-    said = [
-        f"{names[c.from_mark]} to {names[c.to_mark]}: {c.quantity} differs by "
-        f"{c.difference.text} {c.difference.unit}. Not averaged: a question."
-        for c in failed
-        if c.to_mark is not None and c.difference is not None
-    ]
     common = set.intersection(*({c.from_mark, c.to_mark} for c in failed))
     listed = sorted(names[m] for m in common if m is not None)
-    if len(listed) == 1 and len(failed) > 1:
-        said.append(f"Every disagreement names {listed[0]}: measure to it again.")
-    elif len(listed) == 2:
-        said.append(
+    if len(listed) == 1:
+        return [f"Every disagreement names {listed[0]}: measure to it again."]
+    if len(listed) == 2:
+        return [
             f"{listed[0]} or {listed[1]}: measure from each to a third mark to tell."
-        )
-    else:
-        said.append("No one mark explains all of it: measure the others again.")
-    return said
+        ]
+    return ["No one mark explains all of it: measure the others again."]
 
 
 def _distance(

@@ -210,3 +210,14 @@ def test_work_that_says_nothing_is_refused(more, words) -> None:
         recovered(record, marks, **more)
     with pytest.raises(Refused, match="to itself"):
         recovered(record, marks, ("CP1", "CP1", "1"))
+
+
+def test_distances_and_rises_are_explained_apart() -> None:
+    record, marks = field_job()
+    work = recovered(
+        record, marks, ("CP1", "CP2", "200.20"), rises=[("BM1", "BM2", "3.35")]
+    )
+    assert [r for r in work.fact.results if "third mark" in r] == [
+        "CP1 or CP2: measure from each to a third mark to tell.",
+        "BM1 or BM2: measure from each to a third mark to tell.",
+    ]
