@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import secrets
 import uuid
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 from contextlib import contextmanager
 from dataclasses import dataclass, field, replace
 from datetime import datetime, timedelta
@@ -192,8 +192,8 @@ class _Writing:
     ) -> tuple[list[MarkLink], list[MatterLink]]:
         """What the entry names; a correction also names all that its target named."""
         if target is None:
-            return list(said.fact.marks()), list(said.fact.matters())
-        marks = [] if said.withdraws else list(said.fact.marks())
+            return one_each(said.fact.marks()), list(said.fact.matters())
+        marks = [] if said.withdraws else one_each(said.fact.marks())
         matters = [] if said.withdraws else list(said.fact.matters())
         role = "withdrawn" if said.withdraws else "corrected"
         marks += [
@@ -313,6 +313,23 @@ class _Writing:
         self.record.head_recorded_at = self.now
         self.record.save(update_fields=["head", "peaks", "head_recorded_at"])
         folds.refresh(self.record, self.entries, self.marks, self.matters)
+
+
+def one_each(links: Iterable[MarkLink]) -> list[MarkLink]:
+    """One link for each mark: its chain has one place for an entry, which may touch it
+    in two roles and act on it twice."""
+    found: dict[uuid.UUID, MarkLink] = {}
+    for link in links:
+        first = found.get(link.mark)
+        if first is None:
+            found[link.mark] = link
+        else:
+            roles = dict.fromkeys([*first.role.split(" and "), link.role])
+            effects = [e for e in (first.effect, link.effect) if e]
+            found[link.mark] = MarkLink(
+                link.mark, " and ".join(roles), "|".join(effects)
+            )
+    return list(found.values())
 
 
 def link_hash(leaf: bytes, mark: uuid.UUID, running: int) -> str:

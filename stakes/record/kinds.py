@@ -56,7 +56,11 @@ def kind(words: str) -> Callable[[F], F]:
     """Register a fact under past-tense words, unique in the whole program."""
 
     def declare(fact: F) -> F:
-        if words in KINDS and KINDS[words].__qualname__ != fact.__qualname__:
+        known = KINDS.get(words)
+        if known and (known.__module__, known.__name__) != (
+            fact.__module__,
+            fact.__name__,
+        ):
             raise RuntimeError(f"Two kinds of entry are called {words!r}.")
         fact.KIND = words
         KINDS[words] = fact

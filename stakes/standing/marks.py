@@ -163,16 +163,20 @@ def fold(effects: Iterable[Effect]) -> MarkState:
 
 def apply(state: MarkState, at: datetime, number: int, effect: str) -> None:
     """Let one effect act on a mark; a whole job is folded by this, row by row."""
-    act, rest = _read(effect)
-    if act is not None:
+    for act, rest in _read(effect):
         act(state, at, number, rest)
 
 
 @lru_cache(maxsize=8192)
-def _read(effect: str) -> tuple[Act | None, list[str]]:
-    """Effects repeat: most stakes of a setup are set by the very same letters."""
-    word, *rest = effect.split(";")
-    return _ACTS.get(word), rest
+def _read(effect: str) -> list[tuple[Act, list[str]]]:
+    """Effects repeat: most stakes of a setup are set by the very same letters. An entry
+    that acts on a mark twice joins both by "|"."""
+    found = []
+    for part in effect.split("|"):
+        word, *rest = part.split(";")
+        if word in _ACTS:
+            found.append((_ACTS[word], rest))
+    return found
 
 
 def _current(state: MarkState, at: datetime) -> StakeState:

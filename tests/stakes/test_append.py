@@ -88,6 +88,29 @@ def test_each_mark_has_a_chain_of_its_own() -> None:
             previous = link.link
 
 
+def test_an_entry_that_touches_a_mark_twice_has_one_place_in_its_chain() -> None:
+    from stakes.kinds.condition import ForeignMarkFound
+    from stakes.kinds.setups import SetupCheck, SetupOpened, UsedMark
+    from stakes.record.proving import faults
+
+    record = make_record()
+    [one] = plan(record, row("CP1", "1", "2", purpose="control"))
+    found = ForeignMarkFound(mark=uuid.uuid4(), label="X1", words="nail")
+    append(record, found, by=CHIEF, at=after(1))
+    check = SetupCheck(mark=one, quantity="distance", verdict="pass", oriented_on=True)
+    opened = SetupOpened(
+        setup=uuid.uuid4(),
+        sort="free station",
+        used=(UsedMark(mark=one, role="known"),),
+        checks=(check,),
+    )
+    append(record, opened, by=CHIEF, at=after(2))
+    append(record, MarksGone(listed=(one, found.mark)), by=CHIEF, at=after(3))
+    assert faults(record) == []
+    assert Mark.objects.get(label="X1").stakes_set == 1
+    assert EntryMark.objects.get(number=3, mark=one).role == "known and check sighted"
+
+
 def test_every_256_leaves_their_node_is_kept() -> None:
     record = make_record()
     [mark] = plan(record, row("101", "1", "2"))
