@@ -59,9 +59,7 @@ def segment_area(chord_m: float, radius_m: float) -> float:
     >>> round(segment_area(2.0, 1.0), 6)
     1.570796
     """
-    half = _half_angle(
-        reach("chord", chord_m), reach("radius", radius_m)
-    )
+    half = _half_angle(reach("chord", chord_m), reach("radius", radius_m))
     return radius_m**2 * (half - math.sin(half) * math.cos(half))
 
 
