@@ -5,14 +5,18 @@ from __future__ import annotations
 from collections.abc import Sequence
 from datetime import datetime
 
+from jobs.notices import notify
 from jobs.queries.terms import terms_at, today
 from stakes.models import Record
 from stakes.queries import tolerance
+from stakes.record import folds
 
 
 def hand_down() -> None:
     """Set every hook; called once when the program starts."""
     tolerance.SOURCE = tolerance_classes
+    if notify not in folds.AFTER_APPEND:
+        folds.AFTER_APPEND.append(notify)
 
 
 def tolerance_classes(

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from jobs.models.days import Handover, Hold, Request, Visit
 from jobs.models.job import Job, Term
+from jobs.models.notice import Notice
 from jobs.models.people import Company, CompanyKind, Crew, FirmRole, FirmSpell, User
 from jobs.models.seats import Seat
 from jobs.models.sign_in import Outcome, SignInAttempt, Token
@@ -18,6 +19,7 @@ __all__ = [
     "Handover",
     "Hold",
     "Job",
+    "Notice",
     "Outcome",
     "Position",
     "Request",
