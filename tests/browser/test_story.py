@@ -142,6 +142,7 @@ def test_from_an_empty_job_to_the_acknowledged_re_stake(
 
     assert Request.objects.get().state == "closed"
     assert Handover.objects.get().answer == "acknowledged"
+    record.refresh_from_db()
     assert faults(record) == []
     assert replay(record) == []
 
