@@ -12,11 +12,11 @@ Where do the stakes go?
     Fallback, FallbackKind what can be done where there is no room
     board_nails            where lines cross a batter board -> Board of Nail
 What is the building?
-    principal_direction    the direction of its walls and how well they agree
+    principal_direction    the direction of its walls -> PrincipalDirection
     enclosing_rectangle    the rectangle in that direction -> EnclosingRectangle
     WallLine, LineKind     a line that stakes hold
     column_grid            named gridlines and their crossings -> Gridline, GridPoint
-    arc, chord_for         curved walls, and chords within a tolerance
+    arc, Arc, chord_for    curved walls, and chords within a tolerance
 Where may nobody stand or dig?
     excavation             the limit for placing stakes -> Excavation
     Soil, Ground           classification, and conditions that ask for an engineer
