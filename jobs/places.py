@@ -28,7 +28,7 @@ OUTSIDE = (
     ("People", "jobs:people"),
     ("Companies", "jobs:companies"),
     ("Crews", "jobs:crews"),
-    ("Week", "jobs:week"),
+    ("Tray", "jobs:tray"),
     ("My account", "jobs:account"),
 )
 IN_A_JOB = (

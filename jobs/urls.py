@@ -15,6 +15,7 @@ from jobs.pages import (
     sign_in,
     terms,
     tolerances,
+    tray,
     visits,
 )
 
@@ -40,6 +41,9 @@ urlpatterns = [
         companies.company_change,
         name="company-change",
     ),
+    path("tray/", tray.tray, name="tray"),
+    path("tray/<int:item>/admit/", tray.tray_admit, name="tray-admit"),
+    path("tray/<int:item>/aside/", tray.tray_aside, name="tray-aside"),
     path("crews/", companies.crews, name="crews"),
     path("crews/add/", companies.crew_add, name="crew-add"),
     path("crews/<uuid:crew>/change/", companies.crew_change, name="crew-change"),

@@ -15,6 +15,7 @@ urlpatterns = [
         sign_in.set_own_password,
         name="set-password",
     ),
+    path("api/", include("jobs.api.urls")),
     path("", include("jobs.urls")),
     path("jobs/<str:job>/", include("stakes.urls")),
     path("field/<str:job>/", include("stakes.urls.field")),

@@ -8,6 +8,7 @@ from jobs.models.notice import Notice
 from jobs.models.people import Company, CompanyKind, Crew, FirmRole, FirmSpell, User
 from jobs.models.seats import Seat
 from jobs.models.sign_in import Outcome, SignInAttempt, Token
+from jobs.models.tray import TrayItem
 from jobs.models.work import Position, Work
 
 __all__ = [
@@ -27,6 +28,7 @@ __all__ = [
     "SignInAttempt",
     "Term",
     "Token",
+    "TrayItem",
     "User",
     "Visit",
     "Work",
