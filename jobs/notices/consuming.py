@@ -9,6 +9,7 @@ from django.db import transaction
 from django.utils import timezone
 
 from jobs.models import Notice, Position
+from jobs.notices.first import first_notice
 from jobs.notices.matters import letters
 from jobs.work import ask, does
 from stakes.models import Entry, Record
@@ -23,6 +24,7 @@ TOLD = frozenset(
         "request declined",
         "request talked over",
         "visit planned",
+        "visit cancelled",
         "handed over",
         "hold sent",
         "hold lifted",
@@ -72,11 +74,11 @@ def _write(record: Record, entry: Entry, overruled: dict[int, int]) -> None:
         return
     for letter in letters(record, said):
         notice, is_new = Notice.objects.get_or_create(
-            key=f"{record.key}:{entry.number}:{letter.to}"[:140],
+            key=f"{record.key}:{entry.number}:{letter.to.pk}",
             defaults={
                 "record": record,
                 "number": entry.number,
-                "to": letter.to,
+                "to": letter.to.email,
                 "subject": letter.subject,
                 "body": letter.body,
             },
@@ -87,11 +89,15 @@ def _write(record: Record, entry: Entry, overruled: dict[int, int]) -> None:
 
 @does("letter")
 def send(notice: int) -> None:
-    """Send one letter. Its Message-ID is its key, so a repeat is known as one."""
+    """Send one letter. Its Message-ID is its key, so a repeat is known as one.
+
+    A worker killed after sending and before the mark sends it again: at least once.
+    """
     row = Notice.objects.get(pk=notice)
     if row.sent_at is not None:
         return
-    name = row.key.replace(":", ".").replace("@", ".at.")
+    name = row.key.replace(":", ".")
     headers = {"Message-ID": f"<{name}@lathbook>"}
     EmailMessage(row.subject, row.body, to=[row.to], headers=headers).send()
+    first_notice(row)
     Notice.objects.filter(pk=row.pk).update(sent_at=timezone.now())
