@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from stakes.actions.correcting import CORRECTED_BY
+from stakes.actions.correcting import CORRECTED_BY, OWN_WORDS
 from stakes.can import Can
 
 _KINDS = {
@@ -31,8 +31,12 @@ _KINDS = {
     Can.SEND_HOLD: ("hold sent", "hold lifted", "hold heard"),
 }
 
+_ANSWERS = ("cost answered", "handover answered", "hold heard", "request withdrawn")
+"""What the other side said; the firm may not say it differently for them."""
+
 
 def register() -> None:
     """Tell the one table of `stakes` about them."""
     for right, kinds in _KINDS.items():
         CORRECTED_BY.update(dict.fromkeys(kinds, right))
+    OWN_WORDS.update(_ANSWERS)

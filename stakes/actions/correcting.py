@@ -36,10 +36,20 @@ CORRECTED_BY: dict[str, Can] = {
 """Who may correct a kind: whoever may say it. The rest are field facts (RECORD); the
 kinds of `jobs` are added by `jobs`."""
 
+OWN_WORDS: set[str] = set()
+"""Kinds that are somebody's answer: nobody else puts other words into their mouth."""
+
 
 def needed(kind: str) -> Can:
     """The right that correcting an entry of this kind takes."""
     return CORRECTED_BY.get(kind, Can.RECORD)
+
+
+def may_correct(entry: Entry, by: By, rights: Collection[Can]) -> bool:
+    """Whether a page should offer it at all."""
+    if entry.kind in LEFT_TO_THEIR_OWN_PAGES or needed(entry.kind) not in rights:
+        return False
+    return entry.kind not in OWN_WORDS or entry.person == by.person
 
 
 def withdraw(
@@ -47,7 +57,7 @@ def withdraw(
 ) -> Entry:
     """Take back what an entry said; it stays readable, and why stands beside it."""
     with held(record) as locked:
-        target = _target(locked, number, rights)
+        target = _target(locked, number, rights, by)
         said = Said(
             fact=Withdrawn(),
             known=Known.DECIDED,
@@ -73,7 +83,7 @@ def correct(
     `changes` are plain data by fact name; `at` is the right time, None to keep it.
     """
     with held(record) as locked:
-        target = _target(locked, number, rights)
+        target = _target(locked, number, rights, by)
         before = decoded(target, {}).fact
         after = fact_from(target.kind, {**_data(before), **changes})
         if after == before and at in (None, target.happened_at):
@@ -97,7 +107,7 @@ def _data(fact: Fact) -> dict[str, Any]:
     return facts_as_data(fact)
 
 
-def _target(record: Record, number: int, rights: Collection[Can]) -> Entry:
+def _target(record: Record, number: int, rights: Collection[Can], by: By) -> Entry:
     target = Entry.objects.filter(record=record, number=number).first()
     if target is None:
         raise Refused(f"There is no entry {number} in this record.", code="no target")
@@ -111,6 +121,12 @@ def _target(record: Record, number: int, rights: Collection[Can]) -> Entry:
         raise Refused(
             f"Correcting {target.kind!r} takes the right to {needed(target.kind)}.",
             do="Ask somebody who has it.",
+            code="not yours",
+        )
+    if target.kind in OWN_WORDS and target.person != by.person:
+        raise Refused(
+            f"What {target.name} answered is corrected by nobody else.",
+            do="Record what you know of it as an entry of your own.",
             code="not yours",
         )
     newer = corrections(record).get(number)

@@ -11,9 +11,8 @@ from django.shortcuts import render
 from django.urls import reverse
 
 from stakes.actions.correcting import (
-    LEFT_TO_THEIR_OWN_PAGES,
     correct,
-    needed,
+    may_correct,
     withdraw,
 )
 from stakes.can import Can, needs
@@ -99,8 +98,7 @@ def entry(request: HttpRequest, job: str, number: int) -> HttpResponse:
         "body": json.dumps(said.body, indent=2, ensure_ascii=False, sort_keys=True),
         "links": [(link, labels.get(link.mark, "?")) for link in links],
         "matters": EntryMatter.objects.filter(record=record, number=number),
-        "may_correct": needed(one.kind) in request.asked.rights
-        and one.kind not in LEFT_TO_THEIR_OWN_PAGES,
+        "may_correct": may_correct(one, request.asked.by, request.asked.rights),
         "corrected_by": Entry.objects.filter(record=record, corrects=number),
     }
     return render(request, "stakes/job/entry.html", context)
