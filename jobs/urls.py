@@ -82,6 +82,11 @@ urlpatterns = [
     path("jobs/<str:job>/requests/make/", requests.request_make, name="request-make"),
     path("jobs/<str:job>/requests/<uuid:ask>/", requests.request_page, name="request"),
     path(
+        "jobs/<str:job>/requests/<uuid:ask>/photos/<int:photo>/",
+        requests.request_photo,
+        name="request-photo",
+    ),
+    path(
         "jobs/<str:job>/requests/<uuid:ask>/accept/",
         requests.request_accept,
         name="request-accept",
@@ -114,6 +119,11 @@ urlpatterns = [
     path("jobs/<str:job>/visits/", visits.visits, name="visits"),
     path("jobs/<str:job>/visits/plan/", visits.visit_plan, name="visit-plan"),
     path("jobs/<str:job>/visits/<uuid:visit>/", visits.visit_page, name="visit"),
+    path(
+        "jobs/<str:job>/visits/<uuid:visit>/move/",
+        visits.visit_move,
+        name="visit-move",
+    ),
     path(
         "jobs/<str:job>/visits/<uuid:visit>/cancel/",
         visits.visit_cancel,
@@ -164,5 +174,6 @@ urlpatterns = [
         holds.hold_acknowledge,
         name="hold-acknowledge",
     ),
+    path("jobs/<str:job>/holds/<uuid:hold>/tell/", holds.hold_tell, name="hold-tell"),
     path("jobs/<str:job>/holds/<uuid:hold>/lift/", holds.hold_lift, name="hold-lift"),
 ]

@@ -1,10 +1,13 @@
-"""What a job's terms may hold: checks that more than one action makes."""
+"""What may be said: checks that more than one action makes."""
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from decimal import Decimal, InvalidOperation
+from uuid import UUID
 from zoneinfo import available_timezones
 
+from stakes.models import Mark, Record
 from stakes.record import Refused
 
 PLAUSIBLE_FACTOR = (Decimal("0.99"), Decimal("1.01"))
@@ -52,3 +55,15 @@ def checked_text(text: str, field: str, *, most: int, required: bool = True) -> 
             field=field,
         )
     return text
+
+
+def refuse_unknown_marks(record: Record, listed: Sequence[UUID]) -> None:
+    """Marks are named by key; a key of another job, or of none, names nothing here."""
+    known = Mark.objects.filter(record=record, key__in=listed).count()
+    if known != len(set(listed)):
+        raise Refused(
+            "One of the marks named is not on this job.",
+            do="Choose the marks again from the plan or the list.",
+            field="listed",
+            code="unknown mark",
+        )

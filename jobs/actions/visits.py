@@ -1,19 +1,26 @@
-"""Visits: plan, cancel, begin, wait, end tasks, leave, close the day's ticket."""
+"""Visits: plan, cancel, begin, wait, end tasks, leave, close the day's ticket.
+
+The same `key` sent twice is one act, everywhere here.
+"""
 
 from __future__ import annotations
 
 import uuid
-from collections.abc import Sequence
-from datetime import datetime
+from collections.abc import Callable, Mapping, Sequence
+from datetime import datetime, timedelta
+from typing import Any
 from uuid import UUID
 
-from jobs.actions.checked import checked_text
+from jobs.actions.checked import checked_text, refuse_unknown_marks
+from jobs.actions.keyed import keyed
+from jobs.actions.requests import OPEN
 from jobs.kinds.visits import (
     CrewArrived,
     CrewLeft,
     CrewStoodBy,
     DayTicketClosed,
     Member,
+    OfVisit,
     Outcome,
     PlannedTask,
     Signature,
@@ -22,8 +29,11 @@ from jobs.kinds.visits import (
     VisitPlanned,
 )
 from jobs.models import Request, Visit
-from stakes.models import Record
-from stakes.record import By, Fact, Known, Refused, Said, append, held
+from stakes.models import Entry, Record
+from stakes.record import By, Known, Refused, Said, append, held
+from stakes.record.kinds import facts_as_data
+
+LONGEST_WAIT = timedelta(hours=24)
 
 
 def plan_visit(
@@ -38,11 +48,46 @@ def plan_visit(
     visit: UUID | None = None,
     by: By,
     at: datetime | None = None,
+    key: UUID | None = None,
 ) -> UUID:
     """Put a crew on the site for a time, with tasks; requests named in tasks are placed.
 
-    With `visit` an earlier plan is planned anew.
+    With `visit` an earlier plan is planned anew, and a request it no longer answers
+    waits again. The same `key` sent twice is one plan.
     """
+    _refuse_plan(starts_at, ends_at, tasks)
+    said = {
+        "crew": checked_text(crew, "crew", most=120, required=False),
+        "members": tuple(members),
+        "starts_at": starts_at,
+        "ends_at": ends_at,
+        "words": checked_text(words, "words", most=1000, required=False),
+    }
+    planned = visit or key or uuid.uuid4()
+
+    def do(act: UUID) -> list[Entry]:
+        with held(record) as locked:
+            refuse_unknown_marks(locked, [m for task in tasks for m in task.listed])
+            _refuse_asks(locked, tasks)
+            taken_off = _taken_off(_earlier(locked, visit), tasks) if visit else ()
+            fact = VisitPlanned(
+                visit=planned,
+                tasks=tuple(tasks),
+                taken_off=taken_off,
+                **said,  # type: ignore[arg-type]
+            )
+            told = Said(fact=fact, at=at, known=Known.DECIDED, key=key or uuid.uuid4())
+            return append(locked, told, by=by, act=act)
+
+    # A task gets its own id when a form is read, so that is no part of what was asked.
+    words_of = [(t.sort, t.words, t.listed, t.ask) for t in tasks]
+    keyed(record, key, {**said, "tasks": words_of, "visit": visit, "at": at}, do)
+    return planned
+
+
+def _refuse_plan(
+    starts_at: datetime, ends_at: datetime | None, tasks: Sequence[PlannedTask]
+) -> None:
     if ends_at is not None and ends_at <= starts_at:
         raise Refused(
             "The visit ends before it begins.",
@@ -51,23 +96,38 @@ def plan_visit(
         )
     if not tasks:
         raise Refused(
-            "The visit has no task.", do="Say at least one thing to do.", field="tasks"
+            "The visit has no task.",
+            do="Say at least one thing to do.",
+            field="sort",
         )
-    key = visit or uuid.uuid4()
-    fact = VisitPlanned(
-        visit=key,
-        crew=crew.strip(),
-        members=tuple(members),
-        starts_at=starts_at,
-        ends_at=ends_at,
-        tasks=tuple(tasks),
-        words=words.strip(),
-    )
-    with held(record) as locked:
-        if visit is not None:
-            _refuse_over(_visit(locked, visit))
-        append(locked, fact, by=by, at=at, known=Known.DECIDED)
-    return key
+
+
+def _refuse_asks(record: Record, tasks: Sequence[PlannedTask]) -> None:
+    """A visit answers requests of its own job that are still open."""
+    asks = {task.ask for task in tasks if task.ask}
+    found = Request.objects.filter(record=record, key__in=asks)
+    over = [request for request in found if request.state not in OPEN]
+    if len(found) != len(asks) or over:
+        what = f"is {over[0].state} already" if over else "is not on this job"
+        raise Refused(
+            f"A request of this visit {what}.",
+            do="Choose among the open requests of this job.",
+            field="requests",
+            code="no request",
+        )
+
+
+def _earlier(record: Record, visit: UUID) -> Visit:
+    row = _visit(record, visit)
+    _refuse_over(row)
+    return row
+
+
+def _taken_off(earlier: Visit, tasks: Sequence[PlannedTask]) -> tuple[UUID, ...]:
+    """Requests the earlier plan would have answered and the new one does not."""
+    before = [UUID(task["ask"]) for task in earlier.tasks if task.get("ask")]
+    now = {task.ask for task in tasks}
+    return tuple(dict.fromkeys(ask for ask in before if ask not in now))
 
 
 def task_for(request: Request, words: str = "") -> PlannedTask:
@@ -83,14 +143,26 @@ def task_for(request: Request, words: str = "") -> PlannedTask:
 
 
 def cancel_visit(
-    *, record: Record, visit: UUID, reason: str, by: By, at: datetime | None = None
+    *,
+    record: Record,
+    visit: UUID,
+    reason: str,
+    by: By,
+    at: datetime | None = None,
+    key: UUID | None = None,
 ) -> None:
-    """A planned visit will not take place; why stands in the record."""
+    """A planned visit will not take place; the requests on it wait for another."""
     reason = checked_text(reason, "reason", most=1000)
-    with held(record) as locked:
-        _refuse_over(_visit(locked, visit))
-        fact = VisitCancelled(visit=visit, reason=reason)
-        append(locked, fact, by=by, at=at, known=Known.DECIDED)
+
+    def fact_of(row: Visit) -> VisitCancelled:
+        _refuse_over(row)
+        asks = [UUID(task["ask"]) for task in row.tasks if task.get("ask")]
+        return VisitCancelled(
+            visit=visit, reason=reason, asks=tuple(dict.fromkeys(asks))
+        )
+
+    asked = {"cancel": visit, "reason": reason, "at": at}
+    _say(record, visit, asked, fact_of, by, at, key, known=Known.DECIDED)
 
 
 def arrive(
@@ -103,16 +175,22 @@ def arrive(
     told_operators: str = "",
     by: By,
     at: datetime | None = None,
+    key: UUID | None = None,
 ) -> None:
     """The crew came on site: who, the weather, the day's instrument checks."""
+    lines = [
+        checked_text(line, "instruments", most=300) for line in instruments if line
+    ]
     fact = CrewArrived(
         visit=visit,
         members=tuple(members),
-        weather=weather.strip(),
-        instruments=tuple(line.strip() for line in instruments if line.strip()),
-        told_operators=told_operators.strip(),
+        weather=checked_text(weather, "weather", most=200, required=False),
+        instruments=tuple(lines),
+        told_operators=checked_text(
+            told_operators, "told_operators", most=200, required=False
+        ),
     )
-    _say(record, visit, fact, by, at)
+    _say_so(record, fact, by, at, key)
 
 
 def stand_by(
@@ -124,20 +202,36 @@ def stand_by(
     reason: str,
     by: By,
     at: datetime | None = None,
+    key: UUID | None = None,
 ) -> None:
     """The crew waited and could not work; billable time needs its reason."""
     if until <= since:
-        raise Refused("The wait ends before it begins.", field="until")
+        raise Refused(
+            "The wait ends before it begins.", do="Check both times.", field="until"
+        )
+    if until - since > LONGEST_WAIT:
+        raise Refused(
+            "The wait is longer than a day.",
+            do="Check both dates; record each day on its own visit.",
+            field="until",
+        )
     reason = checked_text(reason, "reason", most=1000)
     fact = CrewStoodBy(visit=visit, since=since, until=until, reason=reason)
-    _say(record, visit, fact, by, at)
+    _say_so(record, fact, by, at, key)
 
 
 def leave(
-    *, record: Record, visit: UUID, remark: str = "", by: By, at: datetime | None = None
+    *,
+    record: Record,
+    visit: UUID,
+    remark: str = "",
+    by: By,
+    at: datetime | None = None,
+    key: UUID | None = None,
 ) -> None:
     """The crew left the site."""
-    _say(record, visit, CrewLeft(visit=visit, remark=remark.strip()), by, at)
+    remark = checked_text(remark, "remark", most=500, required=False)
+    _say_so(record, CrewLeft(visit=visit, remark=remark), by, at, key)
 
 
 def end_task(
@@ -150,24 +244,29 @@ def end_task(
     remark: str = "",
     by: By,
     at: datetime | None = None,
+    key: UUID | None = None,
 ) -> None:
     """One task came to its outcome. "Sent away" says by whom."""
-    if outcome == "sent away":
-        sent_away_by = checked_text(sent_away_by, "name", most=120)
-    with held(record) as locked:
-        row = _visit(locked, visit)
+    sent_away_by = checked_text(
+        sent_away_by, "name", most=120, required=outcome == "sent away"
+    )
+    remark = checked_text(remark, "remark", most=500, required=False)
+
+    def fact_of(row: Visit) -> TaskEnded:
         planned = next((t for t in row.tasks if t["task"] == str(task)), None)
         if planned is None:
             raise Refused("This task is not on the visit.", field="task")
-        fact = TaskEnded(
+        return TaskEnded(
             visit=visit,
             task=task,
             outcome=outcome,
-            sent_away_by=sent_away_by.strip(),
-            remark=remark.strip(),
+            sent_away_by=sent_away_by,
+            remark=remark,
             ask=UUID(planned["ask"]) if planned.get("ask") else None,
         )
-        append(locked, fact, by=by, at=at)
+
+    asked = {"task": task, "outcome": outcome, "by": sent_away_by, "words": remark}
+    _say(record, visit, {**asked, "at": at}, fact_of, by, at, key)
 
 
 def close_ticket(
@@ -180,26 +279,49 @@ def close_ticket(
     words: str = "",
     by: By,
     at: datetime | None = None,
+    key: UUID | None = None,
 ) -> None:
     """The superintendent signed the day's ticket, declined it, or was absent."""
-    if signature != "absent":
-        signed_by = checked_text(signed_by, "name", most=120)
-    if signature == "declined":
-        words = checked_text(words, "reason", most=1000)
     fact = DayTicketClosed(
         visit=visit,
         signature=signature,
-        signed_by=signed_by.strip(),
-        company=company.strip(),
-        words=words.strip(),
+        signed_by=checked_text(
+            signed_by, "name", most=120, required=signature != "absent"
+        ),
+        company=checked_text(company, "company", most=120, required=False),
+        words=checked_text(
+            words, "reason", most=1000, required=signature == "declined"
+        ),
     )
-    _say(record, visit, fact, by, at)
+    _say_so(record, fact, by, at, key)
 
 
-def _say(record: Record, visit: UUID, fact: Fact, by: By, at: datetime | None) -> None:
-    with held(record) as locked:
-        _visit(locked, visit)
-        append(locked, Said(fact=fact, at=at, known=Known.SEEN), by=by)
+def _say_so(
+    record: Record, fact: OfVisit, by: By, at: datetime | None, key: UUID | None
+) -> None:
+    """A fact that asks nothing of the visit but that it exists."""
+    asked = {"kind": fact.KIND, "facts": facts_as_data(fact), "at": at}
+    _say(record, fact.visit, asked, lambda row: fact, by, at, key)
+
+
+def _say(
+    record: Record,
+    visit: UUID,
+    asked: Mapping[str, Any],
+    fact_of: Callable[[Visit], OfVisit],
+    by: By,
+    at: datetime | None,
+    key: UUID | None,
+    *,
+    known: Known = Known.SEEN,
+) -> None:
+    def do(act: UUID) -> list[Entry]:
+        with held(record) as locked:
+            fact = fact_of(_visit(locked, visit))
+            said = Said(fact=fact, at=at, known=known, key=key or uuid.uuid4())
+            return append(locked, said, by=by, act=act)
+
+    keyed(record, key, asked, do)
 
 
 def _visit(record: Record, visit: UUID) -> Visit:

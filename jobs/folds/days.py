@@ -1,6 +1,13 @@
-"""Visits, requests, handovers and holds as rows."""
+"""Visits, requests, handovers and holds as rows.
+
+A fold is total: words longer than their column are cut here, in the row; the record
+keeps them whole.
+"""
 
 from __future__ import annotations
+
+from datetime import datetime
+from uuid import UUID
 
 import msgspec
 
@@ -8,6 +15,8 @@ from jobs.kinds import handovers, holds, requests, visits
 from jobs.models import Handover, Hold, Request, Visit
 from stakes.record import Counted
 from stakes.record.folds import Columns, fold_of
+
+MOST_MINUTES = 100_000
 
 
 @fold_of("visit", model=Visit)
@@ -29,24 +38,29 @@ def visit(happened: list[Counted]) -> Columns | None:
             case visits.VisitCancelled(reason=reason):
                 later["cancelled"] = reason
             case visits.CrewArrived(weather=weather):
-                later |= {"arrived_at": said.happened_at, "weather": weather}
+                later |= {"arrived_at": said.happened_at, "weather": weather[:200]}
             case visits.CrewStoodBy(since=since, until=until):
-                later["standby_minutes"] += int((until - since).total_seconds() // 60)
+                later["standby_minutes"] += _minutes(since, until)
             case visits.CrewLeft():
                 later["left_at"] = said.happened_at
             case visits.TaskEnded() as ended:
                 outcomes[str(ended.task)] = _outcome(ended)
             case visits.DayTicketClosed(signature=signature, signed_by=name):
-                later |= {"ticket": signature, "ticket_by": name}
+                later |= {"ticket": signature, "ticket_by": name[:200]}
     if row is None:
         return None
     row["tasks"] = [task | outcomes.get(task["task"], {}) for task in row["tasks"]]
     return row | later
 
 
+def _minutes(since: datetime, until: datetime) -> int:
+    """Whole minutes of a wait; a nonsense span must not break the row it stands in."""
+    return max(0, min(int((until - since).total_seconds() // 60), MOST_MINUTES))
+
+
 def _planned(plan: visits.VisitPlanned) -> Columns:
     return {
-        "crew": plan.crew,
+        "crew": plan.crew[:120],
         "members": msgspec.to_builtins(plan.members),
         "tasks": msgspec.to_builtins(plan.tasks),
         "words": plan.words,
@@ -65,45 +79,72 @@ def _outcome(ended: visits.TaskEnded) -> Columns:
 
 @fold_of("request", model=Request)
 def request(happened: list[Counted]) -> Columns | None:
-    """A request runs: received, accepted or declined, placed, closed; or taken back."""
+    """A request runs: received, accepted or declined, placed, closed; or taken back.
+
+    A visit that is cancelled, planned without it or ended with the task undone leaves
+    it waiting for another one.
+    """
     row: Columns | None = None
+    ask: UUID | None = None
+    undecided = "received"
     for said in happened:
         match said.fact:
             case requests.RequestMade() as made:
-                row = _made(made, said)
-            case _ if row is None:
+                row, ask = _made(made, said), made.ask
+            case _ if row is None or ask is None:
                 continue
             case requests.RequestAccepted() as accepted:
-                row |= {
-                    "state": "accepted",
-                    "promised_for": accepted.promised_for,
-                    "payer": accepted.payer,
-                }
+                row |= _accepted(accepted, row)
+                undecided = "accepted"
             case requests.RequestDeclined(reason=reason):
                 row |= {"state": "declined", "reason": reason}
             case requests.CostAnswered(accepted=accepted):
                 row["cost"] = "accepted" if accepted else "disputed"
             case requests.RequestWithdrawn(reason=reason):
                 row |= {"state": "withdrawn", "reason": reason}
-            case visits.VisitPlanned(visit=key):
-                row["visit"] = key
-                if row["state"] in ("received", "accepted"):
-                    row["state"] = "scheduled"
             case requests.RequestClosed():
                 row |= {"state": "closed", "closed_at": said.happened_at}
+            case visits.VisitPlanned(visit=key, taken_off=taken_off):
+                off = ask in taken_off
+                row |= _waits(row, key, undecided) if off else _placed(row, key)
+            case visits.VisitCancelled(visit=key):
+                row |= _waits(row, key, undecided)
+            case visits.TaskEnded(visit=key, outcome=outcome) if outcome != "done":
+                row |= _waits(row, key, undecided)
     return row
+
+
+def _accepted(accepted: requests.RequestAccepted, row: Columns) -> Columns:
+    """Accepting a request that is on a visit already leaves it there."""
+    return {
+        "state": "scheduled" if row["state"] == "scheduled" else "accepted",
+        "promised_for": accepted.promised_for,
+        "payer": accepted.payer[:120],
+    }
+
+
+def _placed(row: Columns, visit: UUID) -> Columns:
+    is_open = row["state"] in ("received", "accepted", "scheduled")
+    return {"visit": visit, "state": "scheduled" if is_open else row["state"]}
+
+
+def _waits(row: Columns, visit: UUID, state: str) -> Columns:
+    """It needs another visit, unless it has been put on one already."""
+    if row["state"] != "scheduled" or row["visit"] != visit:
+        return {}
+    return {"visit": None, "state": state}
 
 
 def _made(made: requests.RequestMade, said: Counted) -> Columns:
     return {
         "sort": made.sort,
-        "company": made.company,
-        "company_name": made.company_name,
-        "asked_by": said.name,
+        "company": made.company[:36],
+        "company_name": made.company_name[:120],
+        "asked_by": said.name[:200],
         "asked_by_id": said.person,
         "listed": [str(mark) for mark in made.listed],
         "words": made.words,
-        "received_at": said.recorded_at,
+        "received_at": said.happened_at,
         "needed_by": made.needed_by,
         "earliest": made.earliest,
         "built_from": made.built_from,
@@ -138,12 +179,12 @@ def handover(happened: list[Counted]) -> Columns | None:
 def _given(given: handovers.HandedOver, said: Counted) -> Columns:
     return {
         "listed": [str(mark) for mark in given.listed],
-        "company": given.company,
-        "company_name": given.company_name,
-        "to_whom": given.to_whom,
+        "company": given.company[:36],
+        "company_name": given.company_name[:120],
+        "to_whom": given.to_whom[:120],
         "signature": given.signature,
         "words": given.words,
-        "left_with": given.left_with,
+        "left_with": given.left_with[:120],
         "lacking": list(given.lacking),
         "ask": given.ask,
         "visit": given.visit,

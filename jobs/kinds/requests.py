@@ -9,9 +9,11 @@ from uuid import UUID
 
 import msgspec
 
+from stakes.kinds.photos import photo_links
 from stakes.record import Fact, MarkLink, MatterLink, kind
 
 Moment = Annotated[datetime, msgspec.Meta(tz=True)]
+Sha256 = Annotated[str, msgspec.Meta(pattern="^[0-9a-f]{64}$")]
 AskSort = Literal["lay out", "re-stake", "check", "explain"]
 
 
@@ -45,10 +47,14 @@ class RequestMade(_OfRequest, frozen=True, kw_only=True):
     sheet: UUID | None = None
     sheet_words: str = ""
     site_ready: str = ""
-    photos: tuple[str, ...] = ()
+    photos: tuple[Sha256, ...] = ()
 
     def marks(self) -> Iterable[MarkLink]:
         return [MarkLink(mark, "asked for") for mark in self.listed]
+
+    def matters(self) -> Iterable[MatterLink]:
+        yield MatterLink("request", self.ask)
+        yield from photo_links(dict.fromkeys(self.photos))
 
     def sentence(self) -> str:
         built = f" Built from them: {self.built_from}." if self.built_from else ""

@@ -43,7 +43,9 @@ class Member(msgspec.Struct, frozen=True, kw_only=True):
     duty: str = ""
 
 
-class _OfVisit(Fact, frozen=True, kw_only=True):
+class OfVisit(Fact, frozen=True, kw_only=True):
+    """What is said of one visit."""
+
     visit: UUID
 
     def matters(self) -> Iterable[MatterLink]:
@@ -51,9 +53,9 @@ class _OfVisit(Fact, frozen=True, kw_only=True):
 
 
 @kind("visit planned")
-class VisitPlanned(_OfVisit, frozen=True, kw_only=True):
+class VisitPlanned(OfVisit, frozen=True, kw_only=True):
     """A crew is to be on the site for a time. Planned again under the same key, the
-    later plan counts."""
+    later plan counts; `taken_off` names requests the earlier plan would have answered."""
 
     crew: str = ""
     members: tuple[Member, ...] = ()
@@ -61,6 +63,7 @@ class VisitPlanned(_OfVisit, frozen=True, kw_only=True):
     ends_at: Moment | None = None
     tasks: tuple[PlannedTask, ...] = ()
     words: str = ""
+    taken_off: tuple[UUID, ...] = ()
 
     def marks(self) -> Iterable[MarkLink]:
         listed = dict.fromkeys(mark for task in self.tasks for mark in task.listed)
@@ -70,23 +73,32 @@ class VisitPlanned(_OfVisit, frozen=True, kw_only=True):
         yield MatterLink("visit", self.visit)
         for ask in dict.fromkeys(task.ask for task in self.tasks if task.ask):
             yield MatterLink("request", ask, "placed")
+        for ask in self.taken_off:
+            yield MatterLink("request", ask, "taken off")
 
     def sentence(self) -> str:
-        return f"Visit planned with {len(self.tasks)} tasks."
+        count = len(self.tasks)
+        return f"Visit planned with {count} task{'' if count == 1 else 's'}."
 
 
 @kind("visit cancelled")
-class VisitCancelled(_OfVisit, frozen=True, kw_only=True):
-    """A planned visit will not take place."""
+class VisitCancelled(OfVisit, frozen=True, kw_only=True):
+    """A planned visit will not take place; `asks` are the requests it leaves waiting."""
 
     reason: str
+    asks: tuple[UUID, ...] = ()
+
+    def matters(self) -> Iterable[MatterLink]:
+        yield MatterLink("visit", self.visit)
+        for ask in self.asks:
+            yield MatterLink("request", ask, "taken off")
 
     def sentence(self) -> str:
         return f"Visit cancelled: {self.reason}"
 
 
 @kind("crew arrived")
-class CrewArrived(_OfVisit, frozen=True, kw_only=True):
+class CrewArrived(OfVisit, frozen=True, kw_only=True):
     """The crew came onto the site: who with which duty, the weather, and what the
     instruments showed in the day's checks."""
 
@@ -100,7 +112,7 @@ class CrewArrived(_OfVisit, frozen=True, kw_only=True):
 
 
 @kind("crew stood by")
-class CrewStoodBy(_OfVisit, frozen=True, kw_only=True):
+class CrewStoodBy(OfVisit, frozen=True, kw_only=True):
     """The crew waited on the site and could not work."""
 
     since: Moment
@@ -113,7 +125,7 @@ class CrewStoodBy(_OfVisit, frozen=True, kw_only=True):
 
 
 @kind("crew left")
-class CrewLeft(_OfVisit, frozen=True, kw_only=True):
+class CrewLeft(OfVisit, frozen=True, kw_only=True):
     """The crew left the site."""
 
     remark: str = ""
@@ -123,7 +135,7 @@ class CrewLeft(_OfVisit, frozen=True, kw_only=True):
 
 
 @kind("task ended")
-class TaskEnded(_OfVisit, frozen=True, kw_only=True):
+class TaskEnded(OfVisit, frozen=True, kw_only=True):
     """A task of a visit came to its outcome. A wasted trip is an outcome too."""
 
     task: UUID
@@ -145,7 +157,7 @@ class TaskEnded(_OfVisit, frozen=True, kw_only=True):
 
 
 @kind("day ticket closed")
-class DayTicketClosed(_OfVisit, frozen=True, kw_only=True):
+class DayTicketClosed(OfVisit, frozen=True, kw_only=True):
     """The superintendent signed the day's ticket, declined, or was absent."""
 
     signature: Signature
@@ -159,7 +171,7 @@ class DayTicketClosed(_OfVisit, frozen=True, kw_only=True):
 
 
 @kind("caution acknowledged")
-class CautionAcknowledged(_OfVisit, frozen=True, kw_only=True):
+class CautionAcknowledged(OfVisit, frozen=True, kw_only=True):
     """A caution was shown and acknowledged before the work it is about."""
 
     caution: str

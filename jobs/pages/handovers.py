@@ -9,13 +9,16 @@ from django.shortcuts import render
 from django.urls import reverse
 
 from jobs.actions.handovers import answer_handover, hand_over
-from jobs.forms.days import AnswerHandoverForm, HandOverForm
-from jobs.models import Handover, Request
+from jobs.forms.asking import labels_of
+from jobs.forms.handovers import AnswerHandoverForm, HandOverForm
+from jobs.kinds.handovers import HandedOver
+from jobs.models import Handover, Request, Visit
 from jobs.pages.answer import answer, sent
 from jobs.queries.companies import companies_seen
-from jobs.queries.requests import standings
+from jobs.queries.readiness import lacking
+from jobs.queries.requests import requests_seen, standings
 from stakes.can import Asked, Can, needs
-from stakes.models import Mark
+from stakes.record import entries
 
 
 def handovers_seen(asked: Asked):
@@ -46,26 +49,40 @@ def handovers(request: HttpRequest, job: str) -> HttpResponse:
 def handover_page(request: HttpRequest, job: str, handover: UUID) -> HttpResponse:
     asked = request.asked
     one = _one(asked, handover)
-    context = {"one": one, "marks": standings(asked.record, one.listed)}
+    context = {
+        "one": one,
+        "marks": standings(asked.record, one.listed),
+        "explained": _explained(asked, one),
+        "opens": requests_seen(asked).filter(key=one.ask).exists(),
+        # The firm's own office does not acknowledge for a company.
+        "answers": asked.can(Can.SIGN) and not one.answer,
+    }
     return render(request, "jobs/handover.html", context)
+
+
+def _explained(asked: Asked, one: Handover) -> tuple[str, ...]:
+    said = entries(asked.record, thing="handover", key=one.key)
+    given = next((c.fact for c in said if isinstance(c.fact, HandedOver)), None)
+    return given.explained if given else ()
 
 
 @needs(Can.HAND_OVER)
 def handover_make(request: HttpRequest, job: str) -> HttpResponse:
     asked = request.asked
-    ask = _asked_for(request)
-    form = HandOverForm(
-        sent(request), record=asked.record, initial=_initial(asked, ask)
-    )
+    ask, visit = _asked_for(request), _visit_of(request)
+    listed = ask.listed if ask else _marks_of(visit)
+    initial = {"listed": labels_of(asked.record, listed)}
+    if ask:
+        initial["company"] = ask.company
+    form = HandOverForm(sent(request), record=asked.record, initial=initial)
     made: list[UUID] = []
 
     def do() -> None:
-        visit = _key(request.GET.get("visit", ""))
         made.append(
             hand_over(
                 record=asked.record,
                 ask=ask.key if ask else None,
-                visit=visit or (ask.visit if ask else None),
+                visit=visit.key if visit else (ask.visit if ask else None),
                 by=asked.by,
                 **form.cleaned_data,
             )
@@ -77,9 +94,11 @@ def handover_make(request: HttpRequest, job: str) -> HttpResponse:
         do,
         to=lambda: _to(job, made[0]),
         said="Handed over. Their duty to preserve the stakes begins here.",
-        title="Hand stakes over",
-        lead="Show each stake and what it refers to. Offsets are measured level.",
-        verb="Record the handover",
+        template="jobs/handover_make.html",
+        back=reverse("jobs:handovers", kwargs={"job": job}),
+        body_class="" if asked.can(Can.PLAN) else "field",
+        ask=ask,
+        lacking=lacking(asked.record, [UUID(m) for m in listed]) if listed else [],
     )
 
 
@@ -96,12 +115,15 @@ def _asked_for(request: HttpRequest) -> Request | None:
     return Request.objects.filter(record=record, key=key).first() if key else None
 
 
-def _initial(asked: Asked, ask: Request | None) -> dict[str, str]:
-    if ask is None:
-        return {}
-    marks = Mark.objects.filter(record=asked.record, key__in=ask.listed)
-    labels = ", ".join(marks.order_by("label").values_list("label", flat=True))
-    return {"company": ask.company, "listed": labels}
+def _visit_of(request: HttpRequest) -> Visit | None:
+    key = _key(request.GET.get("visit", ""))
+    record = request.asked.record
+    return Visit.objects.filter(record=record, key=key).first() if key else None
+
+
+def _marks_of(visit: Visit | None) -> list[str]:
+    tasks = visit.tasks if visit else []
+    return list(dict.fromkeys(m for task in tasks for m in task.get("listed", [])))
 
 
 @needs(Can.SIGN)
@@ -116,6 +138,7 @@ def handover_answer(request: HttpRequest, job: str, handover: UUID) -> HttpRespo
             handover=one.key,
             acknowledged=form.cleaned_data["acknowledged"] == "yes",
             words=form.cleaned_data["words"],
+            key=form.cleaned_data["key"],
             by=asked.by,
         ),
         to=_to(job, handover),

@@ -2,24 +2,32 @@
 
 from __future__ import annotations
 
+from datetime import datetime
 from uuid import UUID
 
 from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import render
 from django.urls import reverse
 
-from jobs.actions.holds import NEUTRAL_WORDS, hear_hold, lift_hold, send_hold
-from jobs.forms.days import HoldForm, LiftForm
+from jobs.actions.holds import (
+    NEUTRAL_WORDS,
+    has_heard,
+    hear_hold,
+    lift_hold,
+    send_hold,
+)
+from jobs.forms.asking import labels_of
+from jobs.forms.holds import HoldForm, LiftForm, TellForm
 from jobs.models import Company, Hold
 from jobs.pages.answer import answer, do, sent
 from jobs.queries.companies import companies_seen
 from jobs.queries.holders import holders
+from jobs.queries.proposals import proposal
 from jobs.queries.requests import standings
 from stakes.can import Asked, Can, needs
-from stakes.models import Mark
-from stakes.queries.drawing import in_order
-from stakes.queries.state import job_state
-from stakes.standing.marks import Trust
+
+MOST_IN_ADDRESS = 150
+"""Marks an address can carry; more are added to the form by their numbers."""
 
 
 def holds_seen(asked: Asked) -> list[Hold]:
@@ -49,33 +57,12 @@ def holds(request: HttpRequest, job: str) -> HttpResponse:
     context = {
         "in_force": [h for h in found if not h.lifted_at],
         "lifted": [h for h in found if h.lifted_at],
-        "proposed": _proposed(asked),
     }
+    # The doubts of the firm's own work are the firm's to weigh first.
+    if asked.can(Can.READ_RECORD) and (proposed := proposal(asked.record)):
+        marks = "&".join(f"mark={view.key}" for view in proposed.all[:MOST_IN_ADDRESS])
+        context |= {"proposed": proposed, "query": marks}
     return render(request, "jobs/holds.html", context)
-
-
-def _proposed(asked: Asked) -> dict | None:
-    """What is in question and under no hold yet; built from it first, then handed over."""
-    if not asked.can(Can.READ_RECORD):
-        return None
-    doubtful = (Trust.IN_QUESTION, Trust.FAILED)
-    views = [
-        view
-        for view in in_order(job_state(asked.record).marks.values())
-        if view.trust.trust in doubtful
-        and view.stake is not None
-        and not view.state.held
-        and not view.plan.is_control
-    ]
-    if not views:
-        return None
-    return {
-        "built": [v for v in views if v.stake and v.stake.built_from],
-        "given": [v for v in views if v.stake and v.stake.handed_over],
-        "all": views,
-        "holders": holders(asked.record, [v.key for v in views]),
-        "query": "&".join(f"mark={v.key}" for v in views[:100]),
-    }
 
 
 @needs(Can.SEND_HOLD)
@@ -87,11 +74,7 @@ def hold_send(request: HttpRequest, job: str) -> HttpResponse:
             keys.append(UUID(text))
         except ValueError:
             continue
-    marks = Mark.objects.filter(record=asked.record, key__in=keys).order_by("label")
-    initial = {
-        "listed": ", ".join(marks.values_list("label", flat=True)),
-        "words": NEUTRAL_WORDS,
-    }
+    initial = {"listed": labels_of(asked.record, keys), "words": NEUTRAL_WORDS}
     form = HoldForm(sent(request), record=asked.record, initial=initial)
     made: list[UUID] = []
     return answer(
@@ -111,9 +94,13 @@ def hold_send(request: HttpRequest, job: str) -> HttpResponse:
 @needs(Can.SEE_HOLDS)
 def hold_page(request: HttpRequest, job: str, hold: UUID) -> HttpResponse:
     asked = request.asked
-    one = _one(asked, hold)
+    one = _read(asked, _one(asked, hold))
     own = companies_seen(asked)
-    told = [h for h in one.heard if own is None or h["company"] in own]
+    told = [
+        {**h, "when": datetime.fromisoformat(h["at"])}
+        for h in one.heard
+        if own is None or h["company"] in own
+    ]
     context = {
         "one": one,
         "marks": standings(asked.record, one.listed),
@@ -125,6 +112,56 @@ def hold_page(request: HttpRequest, job: str, hold: UUID) -> HttpResponse:
         ),
     }
     return render(request, "jobs/hold.html", context)
+
+
+def _read(asked: Asked, one: Hold) -> Hold:
+    """That a holder opened the hold is part of the record: who knew what, when."""
+    whom = asked.by.name
+    holds_it = asked.can(Can.ACKNOWLEDGE) and asked.company in one.companies
+    if not holds_it or one.lifted_at or has_heard(one, "read", asked.company, whom):
+        return one
+    company = Company.objects.get(pk=asked.company)
+    hear_hold(
+        record=asked.record,
+        hold=one.key,
+        how="read",
+        company=str(company.pk),
+        company_name=company.name,
+        by_whom=whom,
+        by=asked.by,
+    )
+    return _one(asked, one.key)
+
+
+@needs(Can.HAND_OVER)
+def hold_tell(request: HttpRequest, job: str, hold: UUID) -> HttpResponse:
+    """A holder was rung up: who of which company heard it."""
+    asked, one = request.asked, _one(request.asked, hold)
+    form = TellForm(sent(request), companies=one.companies)
+
+    def do() -> None:
+        said = dict(form.cleaned_data)
+        company = said.pop("company")
+        hear_hold(
+            record=asked.record,
+            hold=one.key,
+            how="told",
+            company=str(company.pk),
+            company_name=company.name,
+            by=asked.by,
+            **said,
+        )
+
+    return answer(
+        request,
+        form,
+        do,
+        to=_to(job, hold),
+        said="It is recorded who was told.",
+        title="Told by telephone",
+        lead="Whoever holds stakes of this hold and was told of it.",
+        verb="Record it",
+    )
 
 
 @needs(Can.ACKNOWLEDGE)
@@ -152,9 +189,8 @@ def hold_acknowledge(request: HttpRequest, job: str, hold: UUID) -> HttpResponse
 @needs(Can.SEND_HOLD)
 def hold_lift(request: HttpRequest, job: str, hold: UUID) -> HttpResponse:
     asked, one = request.asked, _one(request.asked, hold)
-    marks = Mark.objects.filter(record=asked.record, key__in=one.in_force)
-    labels = ", ".join(marks.order_by("label").values_list("label", flat=True))
-    form = LiftForm(sent(request), record=asked.record, initial={"listed": labels})
+    initial = {"listed": labels_of(asked.record, one.in_force)}
+    form = LiftForm(sent(request), record=asked.record, initial=initial)
     return answer(
         request,
         form,

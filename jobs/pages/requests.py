@@ -2,23 +2,32 @@
 
 from __future__ import annotations
 
-import uuid
 from uuid import UUID
 
+from django.contrib import messages
 from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import render
 from django.urls import reverse
 
 from jobs.actions import requests as act
-from jobs.forms.days import AcceptForm, CostForm, ReasonForm, RequestForm, WordsForm
+from jobs.forms.asking import labels_of
+from jobs.forms.requests import (
+    AcceptForm,
+    CostForm,
+    ReasonForm,
+    RequestForm,
+    WordsForm,
+)
 from jobs.models import Company, Request, Visit
-from jobs.pages.answer import answer, sent
+from jobs.pages.answer import SeeOther, answer, sent
 from jobs.queries.companies import companies_seen, sees_all_companies
-from jobs.queries.requests import course_of, requests_seen, standings
+from jobs.queries.requests import may_answer_cost, requests_seen, standings, told
+from jobs.queries.seats import office
+from jobs.queries.terms import terms_at, today
 from jobs.rights import SEATED, Role
 from stakes.actions.photos import keep
 from stakes.can import Asked, Can, needs
-from stakes.models import Mark
+from stakes.pages.field.photos import image
 
 
 @needs(Can.READ)
@@ -55,13 +64,8 @@ def _askers(asked: Asked):
 @needs(Can.REQUEST)
 def request_make(request: HttpRequest, job: str) -> HttpResponse:
     asked = request.asked
-    labels = Mark.objects.filter(
-        record=asked.record, key__in=_keys(request.GET.getlist("mark"))
-    )
-    initial = {
-        "key": uuid.uuid4(),
-        "listed": ", ".join(labels.values_list("label", flat=True)),
-    }
+    keys = _keys(request.GET.getlist("mark"))
+    initial = {"listed": labels_of(asked.record, keys)}
     form = RequestForm(
         sent(request),
         request.FILES or None,
@@ -103,8 +107,6 @@ def _keys(texts: list[str]) -> list[UUID]:
 
 def _phones(asked: Asked) -> list[tuple[str, str]]:
     """Whom to ring at once: the office of the firm."""
-    from jobs.queries.seats import office
-
     return [(p.name, p.phone) for p in office() if p.phone]
 
 
@@ -114,19 +116,39 @@ def request_page(request: HttpRequest, job: str, ask: UUID) -> HttpResponse:
     one = _one(asked, ask)
     context = {
         "one": one,
-        "course": course_of(asked, one),
+        "told": told(asked, one),
         "marks": standings(asked.record, one.listed),
         "visit": Visit.objects.filter(record=asked.record, key=one.visit).first(),
         "is_open": one.state in act.OPEN,
-        "own": companies_seen(asked) is not None,
+        "own": one.company == asked.company and companies_seen(asked) is not None,
+        "answers_cost": may_answer_cost(asked, one),
+        "short": bool(one.needed_by and one.earliest and one.needed_by < one.earliest),
+        "firm_phones": [] if companies_seen(asked) is None else _phones(asked),
     }
     return render(request, "jobs/request.html", context)
+
+
+@needs(Can.READ)
+def request_photo(
+    request: HttpRequest, job: str, ask: UUID, photo: int
+) -> HttpResponse:
+    """A photo sent with a request, counted from 1, for those who see the request."""
+    asked = request.asked
+    made = told(asked, _one(asked, ask)).made
+    if made is None or not 0 < photo <= len(made.photos):
+        raise Http404
+    return image(asked.record, made.photos[photo - 1], 1200)
 
 
 @needs(Can.DECIDE)
 def request_accept(request: HttpRequest, job: str, ask: UUID) -> HttpResponse:
     asked, one = request.asked, _one(request.asked, ask)
-    form = AcceptForm(sent(request), record=asked.record)
+    made = told(asked, one).made
+    usual = terms_at(asked.record, today(asked.record), company=one.company).payer_for(
+        made.cause if made else ""
+    )
+    initial = {"payer": usual.payer if usual else ""}
+    form = AcceptForm(sent(request), record=asked.record, initial=initial)
     return answer(
         request,
         form,
@@ -180,6 +202,9 @@ def request_talk(request: HttpRequest, job: str, ask: UUID) -> HttpResponse:
 @needs(Can.ACCEPT_COST)
 def request_cost(request: HttpRequest, job: str, ask: UUID) -> HttpResponse:
     asked, one = request.asked, _one(request.asked, ask)
+    if not may_answer_cost(asked, one):
+        messages.info(request, "The cost of this request is not yours to answer now.")
+        return SeeOther(_to(job, ask))
     form = CostForm(sent(request))
     return answer(
         request,
@@ -189,6 +214,7 @@ def request_cost(request: HttpRequest, job: str, ask: UUID) -> HttpResponse:
             ask=ask,
             accepted=form.cleaned_data["accepted"] == "yes",
             words=form.cleaned_data["words"],
+            key=form.cleaned_data["key"],
             by=asked.by,
         ),
         to=_to(job, ask),
@@ -203,6 +229,7 @@ def request_cost(request: HttpRequest, job: str, ask: UUID) -> HttpResponse:
 def request_withdraw(request: HttpRequest, job: str, ask: UUID) -> HttpResponse:
     asked, one = request.asked, _one(request.asked, ask)
     form = ReasonForm(sent(request))
+    form.fields["reason"].required = False
     return answer(
         request,
         form,

@@ -12,7 +12,7 @@ from django.utils import timezone
 
 from jobs.api.phone import PhoneItem, admit
 from jobs.declared import Who, open_to
-from jobs.forms.days import ReasonForm
+from jobs.forms.requests import ReasonForm
 from jobs.models import TrayItem
 from jobs.pages.answer import answer, do, sent
 from stakes.record import Refused

@@ -2,27 +2,30 @@
 
 from __future__ import annotations
 
+from typing import Any
 from uuid import UUID, uuid4
 
+import msgspec
 from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import render
 from django.urls import reverse
 
 from jobs.actions import visits as act
-from jobs.forms.days import (
+from jobs.forms.requests import ReasonForm
+from jobs.forms.visits import (
     ArriveForm,
     LeaveForm,
     OutcomeForm,
-    ReasonForm,
     StandByForm,
     TicketForm,
     VisitForm,
+    VisitMoveForm,
 )
 from jobs.kinds.visits import Member, PlannedTask
-from jobs.models import Request, Visit
+from jobs.models import Crew, Request, Visit
 from jobs.pages.answer import answer, sent
 from jobs.queries.companies import companies_seen
-from jobs.queries.visits import day_of, visits_seen
+from jobs.queries.visits import day_of, tasks_seen, visits_seen
 from stakes.can import Asked, Can, needs
 from stakes.models import Mark
 
@@ -48,43 +51,93 @@ def _to(job: str, visit: UUID) -> str:
     return reverse("jobs:visit", kwargs={"job": job, "visit": visit})
 
 
+def _to_place(asked: Asked):
+    """Requests that wait for a visit: accepted, or received and to be decided yet."""
+    waiting = Request.objects.filter(
+        record=asked.record, state__in=("received", "accepted")
+    )
+    return waiting.order_by("received_at")
+
+
 @needs(Can.SCHEDULE)
 def visit_plan(request: HttpRequest, job: str) -> HttpResponse:
     asked = request.asked
-    waiting = Request.objects.filter(
-        record=asked.record, state__in=("received", "accepted")
-    ).order_by("received_at")
     initial = {"requests": request.GET.getlist("ask")}
     form = VisitForm(
-        sent(request), record=asked.record, requests=waiting, initial=initial
+        sent(request),
+        record=asked.record,
+        requests=_to_place(asked),
+        initial=initial,
     )
     made: list[UUID] = []
+    return answer(
+        request,
+        form,
+        lambda: made.append(act.plan_visit(**_plan(asked, form.cleaned_data))),
+        to=lambda: _to(job, made[0]),
+        said="The visit is planned, and its crew is told by mail.",
+        title="Plan a visit",
+        verb="Plan it",
+    )
+
+
+def _plan(asked: Asked, said: dict[str, Any]) -> dict[str, Any]:
+    crew = said["crew"]
+    return {
+        "record": asked.record,
+        "crew": crew.name if crew else "",
+        "members": _members(crew),
+        "starts_at": said["starts_at"],
+        "ends_at": said["ends_at"],
+        "tasks": _tasks(said),
+        "words": said["words"],
+        "key": said["key"],
+        "by": asked.by,
+    }
+
+
+@needs(Can.SCHEDULE)
+def visit_move(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
+    """Rain, a late pour, a sick rod person: the same visit at another time."""
+    asked, one = request.asked, _one(request.asked, visit)
+    initial = {
+        "crew": Crew.objects.filter(name=one.crew).first(),
+        "starts_at": one.starts_at,
+        "ends_at": one.ends_at,
+        "tasks": [task["task"] for task in one.tasks],
+        "words": one.words,
+    }
+    form = VisitMoveForm(
+        sent(request),
+        record=asked.record,
+        requests=_to_place(asked),
+        visit=one,
+        initial=initial,
+    )
 
     def do() -> None:
         said = form.cleaned_data
-        crew = said["crew"]
-        made.append(
-            act.plan_visit(
-                record=asked.record,
-                crew=crew.name if crew else "",
-                members=_members(crew),
-                starts_at=said["starts_at"],
-                ends_at=said["ends_at"],
-                tasks=_tasks(said),
-                words=said["words"],
-                by=asked.by,
-            )
-        )
+        kept = [task for task in one.tasks if task["task"] in said["tasks"]]
+        planned = _plan(asked, said)
+        planned["tasks"] = [*map(_planned, kept), *planned["tasks"]]
+        act.plan_visit(visit=one.key, **planned)
 
     return answer(
         request,
         form,
         do,
-        to=lambda: _to(job, made[0]),
-        said="The visit is planned.",
-        title="Plan a visit",
-        verb="Plan it",
+        to=_to(job, visit),
+        said="The visit is planned anew, and its crew is told by mail.",
+        title="Move or change the visit",
+        lead="A request that is unticked waits for another visit.",
+        verb="Plan it anew",
     )
+
+
+def _planned(task: dict[str, Any]) -> PlannedTask:
+    """A task as it was planned, without what became of it."""
+    named = ("task", "sort", "words", "listed", "ask")
+    return msgspec.convert({k: task[k] for k in named if k in task}, PlannedTask)
 
 
 def _members(crew) -> list[Member]:
@@ -115,16 +168,7 @@ def _tasks(said: dict) -> list[PlannedTask]:
 def visit_page(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
     asked = request.asked
     one = _one(asked, visit)
-    tasks = one.tasks
-    if companies_seen(asked) is not None:
-        own = {
-            str(k)
-            for k in Request.objects.filter(
-                record=asked.record, company=asked.company
-            ).values_list("key", flat=True)
-        }
-        crew = Can.RECORD in asked.rights
-        tasks = [t for t in tasks if crew or t.get("ask") in own]
+    tasks = tasks_seen(asked, one)
     keys = [UUID(m) for t in tasks for m in t.get("listed", [])]
     marks = Mark.objects.filter(record=asked.record).in_bulk(keys)
     context = {
@@ -133,9 +177,15 @@ def visit_page(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
             (t, [marks[UUID(m)] for m in t.get("listed", []) if UUID(m) in marks])
             for t in tasks
         ],
+        # Words to the crew may name another company of the job.
+        "words": one.words if asked.can(Can.RECORD) or _is_ours(asked) else "",
         "day": day_of(asked, one),
     }
     return render(request, "jobs/visit.html", context)
+
+
+def _is_ours(asked: Asked) -> bool:
+    return companies_seen(asked) is None
 
 
 @needs(Can.SCHEDULE)
@@ -158,13 +208,15 @@ def visit_cancel(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
 @needs(Can.RECORD)
 def visit_arrive(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
     asked, one = request.asked, _one(request.asked, visit)
-    named = "\n".join(f"{m['name']}, {m.get('duty', '')}" for m in one.members)
+    named = "\n".join(
+        f"{m['name']}, {m['duty']}" if m.get("duty") else m["name"] for m in one.members
+    )
     form = ArriveForm(sent(request), record=asked.record, initial={"members": named})
 
     def do() -> None:
         said = dict(form.cleaned_data)
         said["members"] = [
-            _member(line) for line in said["members"].splitlines() if line
+            _member(line) for line in said["members"].splitlines() if line.strip()
         ]
         said["instruments"] = said["instruments"].splitlines()
         act.arrive(record=asked.record, visit=one.key, by=asked.by, **said)
@@ -177,6 +229,7 @@ def visit_arrive(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
         said="Arrival recorded.",
         title="On site",
         verb="Record the arrival",
+        body_class="field",
     )
 
 
@@ -199,6 +252,7 @@ def visit_wait(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
         said="The wait is recorded.",
         title="Standing by",
         verb="Record the wait",
+        body_class="field",
     )
 
 
@@ -216,6 +270,7 @@ def visit_leave(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
         said="Leaving recorded.",
         title="Leaving the site",
         verb="Record it",
+        body_class="field",
     )
 
 
@@ -241,6 +296,7 @@ def task_end(request: HttpRequest, job: str, visit: UUID, task: UUID) -> HttpRes
         title=f"How it ended: {planned['sort']}",
         lead=planned.get("words", ""),
         verb="Record it",
+        body_class="field",
     )
 
 
@@ -257,7 +313,9 @@ def ticket_close(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
         to=_to(job, visit),
         said="The day's ticket is closed.",
         title="The day's ticket",
-        lead="Hand the device to the superintendent, or say that nobody was there.",
         verb="Close the ticket",
-        template="jobs/form.html",
+        template="jobs/ticket.html",
+        body_class="field",
+        one=one,
+        day=day_of(asked, one),
     )

@@ -48,6 +48,20 @@ def seat_now(record: Record, person: User) -> SeatThen | None:
     return _together(OF_THE_FIRM[person.firm_role], list(seats), person)
 
 
+def seats_on(person: User, records: Iterable[Record]) -> dict[int, SeatThen]:
+    """The seat a person has now on each of several jobs, by record; one query."""
+    if not person.is_active:
+        return {}
+    firm = OF_THE_FIRM[person.firm_role]
+    listed = list(records)
+    by_record: dict[int, list[Seat]] = {record.pk: [] for record in listed}
+    held = Seat.objects.filter(in_force(timezone.now()), person=person)
+    for seat in held.filter(record__in=listed):
+        by_record[seat.record_id].append(seat)
+    found = {key: _together(firm, seats, person) for key, seats in by_record.items()}
+    return {key: seat for key, seat in found.items() if seat is not None}
+
+
 def asked(
     record: Record, person: User, *, job_name: str, device: str = ""
 ) -> Asked | None:
@@ -81,6 +95,13 @@ def seats_of(record: Record, moment: datetime | None = None) -> QuerySet[Seat]:
 def companies_of(record: Record) -> QuerySet[Company]:
     """The companies that have, or had, somebody seated on a job."""
     return Company.objects.filter(seats__record=record).distinct().order_by("name")
+
+
+def people_of(record: Record, company: str) -> list[User]:
+    """People of a company who hold a seat on a job now."""
+    seats = Seat.objects.filter(in_force(timezone.now()), record=record)
+    held = seats.filter(person__is_active=True).select_related("person")
+    return [seat.person for seat in held if str(seat.company_id) == company]
 
 
 def office() -> QuerySet[User]:

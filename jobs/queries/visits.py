@@ -2,10 +2,13 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 from django.db.models import QuerySet
 
-from jobs.models import Request, Visit
+from jobs.models import Visit
 from jobs.queries.companies import companies_seen
+from jobs.queries.requests import requests_seen
 from stakes.can import Asked, Can
 from stakes.models import EntryMark
 from stakes.queries.history import Line, labels, line
@@ -16,18 +19,37 @@ def visits_seen(asked: Asked) -> QuerySet[Visit]:
     """All visits; a contractor sees those that answer the own company's requests, a
     subcontracted crew those it is on."""
     found = Visit.objects.filter(record=asked.record).order_by("-starts_at")
-    companies = companies_seen(asked)
-    if companies is None:
+    if companies_seen(asked) is None:
         return found
     if asked.can(Can.RECORD):
-        on = [
-            v.key
-            for v in found
-            if any(m["person"] == asked.by.person for m in v.members)
-        ]
-        return found.filter(key__in=on)
-    asks = Request.objects.filter(record=asked.record, company__in=companies)
-    return found.filter(key__in=asks.exclude(visit=None).values("visit"))
+        return found.filter(key__in=[v.key for v in found if _is_on(asked, v)])
+    own = asks_seen(asked)
+    return found.filter(key__in=[v.key for v in found if own & _asks_of(v)])
+
+
+def asks_seen(asked: Asked) -> set[str]:
+    """Requests this reader may open, as the tasks of visits name them."""
+    return {str(key) for key in requests_seen(asked).values_list("key", flat=True)}
+
+
+def tasks_seen(asked: Asked, visit: Visit) -> list[dict[str, Any]]:
+    """The tasks of a visit that concern its reader, each with whether its request may
+    be opened."""
+    own = asks_seen(asked)
+    all_of_them = companies_seen(asked) is None or asked.can(Can.RECORD)
+    return [
+        task | {"opens": task.get("ask") in own}
+        for task in visit.tasks
+        if all_of_them or task.get("ask") in own
+    ]
+
+
+def _is_on(asked: Asked, visit: Visit) -> bool:
+    return any(member["person"] == asked.by.person for member in visit.members)
+
+
+def _asks_of(visit: Visit) -> set[str]:
+    return {task["ask"] for task in visit.tasks if task.get("ask")}
 
 
 def day_of(asked: Asked, visit: Visit) -> list[tuple[Line, list[str]]]:
