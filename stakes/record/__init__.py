@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from stakes.record.append import append, held
-from stakes.record.by import By, Known, TimeKnown
+from stakes.record.by import By, Known, TimeKnown, Told
 from stakes.record.kinds import KINDS, Fact, MarkLink, MatterLink, kind
 from stakes.record.reading import Counted, entries
 from stakes.record.refused import Refused
@@ -20,6 +20,7 @@ __all__ = [
     "Refused",
     "Said",
     "TimeKnown",
+    "Told",
     "append",
     "entries",
     "held",

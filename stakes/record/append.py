@@ -27,7 +27,7 @@ from stakes.models.record import (
     TreeNode,
 )
 from stakes.record import folds, merkle
-from stakes.record.by import By, Known, TimeKnown
+from stakes.record.by import By, Known, TimeKnown, Told
 from stakes.record.canonical import canonical, moment_text, sha256_hex
 from stakes.record.kinds import (
     Fact,
@@ -120,6 +120,7 @@ class _Writing:
         self.chains = {chain.mark: chain for chain in chains}
 
     def add(self, said: Said) -> Entry:
+        said = _as_told(said, self.by.told)
         said_hash = _said_hash(said)
         if known := self._already(said, said_hash):
             return known
@@ -341,6 +342,20 @@ def private_hash(salt: str, text: str) -> str:
     return sha256_hex(bytes.fromhex(salt) + text.encode())
 
 
+def _as_told(said: Said, told: Told | None) -> Said:
+    """The statement with what the device said beside it, where it says nothing else."""
+    if told is None:
+        return said
+    own_clock = said.device_time is not None
+    return replace(
+        said,
+        known=told.known or said.known,
+        counter=said.counter or told.counter,
+        device_time=said.device_time if own_clock else told.device_time,
+        clock_offset_ms=said.clock_offset_ms if own_clock else told.clock_offset_ms,
+    )
+
+
 def _said_hash(said: Said) -> str:
     """What the words were, to tell a retry from another statement under the same key."""
     words = {
@@ -420,6 +435,7 @@ def _body(
         "key": str(said.key),
         "counter": said.counter,
         "device": writing.by.device,
+        "admitted_by": writing.by.told.admitted_by if writing.by.told else "",
         "device_time": moment_text(said.device_time) if said.device_time else "",
         "clock_offset_ms": said.clock_offset_ms,
         "corrects": target.number if target else None,

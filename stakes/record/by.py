@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from datetime import datetime
 from enum import StrEnum
 
 
@@ -10,12 +11,29 @@ from enum import StrEnum
 class By:
     """The person an entry belongs to: an id and a copied name, and the device used.
 
-    Not a foreign key: the record outlives accounts, and `stakes` knows no users.
+    Not a foreign key: the record outlives accounts, and `stakes` knows no users. `told`
+    is what a program sent beside the statement, for every entry of the act.
     """
 
     person: str
     name: str
     device: str = ""
+    told: Told | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class Told:
+    """What a device says of a statement: its own clock and order, how it is known.
+
+    `clock_offset_ms` was measured when it was sent and is what `happened_at` was moved
+    by. `admitted_by` let a statement in that nobody could admit when it came.
+    """
+
+    device_time: datetime | None = None
+    clock_offset_ms: int | None = None
+    counter: int = 0
+    known: Known | None = None
+    admitted_by: str = ""
 
 
 class Known(StrEnum):
