@@ -47,7 +47,10 @@ def asked(request: Request) -> Asked:
 
 
 def moment(request: Request) -> Moment:
-    return moment_of(request._request, asked(request).record)
+    try:
+        return moment_of(request._request, asked(request).record)
+    except OverflowError as error:
+        raise ValidationError({"at": "No job has such a year."}) from error
 
 
 def limit(request: Request) -> int:

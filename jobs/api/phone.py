@@ -7,28 +7,36 @@ the device's own time stays beside it. What cannot be admitted waits in the tray
 
 from __future__ import annotations
 
+import json
 import uuid
-from datetime import UTC, datetime, timedelta
+from datetime import datetime, timedelta
 from typing import Annotated, Any
 
 import msgspec
 from django.utils import timezone
 from drf_spectacular.types import OpenApiTypes
 from drf_spectacular.utils import extend_schema
-from rest_framework.decorators import api_view
+from rest_framework.decorators import api_view, parser_classes
 from rest_framework.request import Request
 from rest_framework.response import Response
 
 from jobs.api.asking import refusal, refusals
-from jobs.api.writing import MOST_ITEMS, Item
+from jobs.api.items import (
+    MOST_ITEMS,
+    Item,
+    fact_of,
+    in_utc,
+    named,
+    readable,
+    say,
+    unsound,
+)
+from jobs.api.parsing import BoundedJSON
 from jobs.declared import Who, open_to
 from jobs.models import TrayItem, User
 from jobs.queries.seats import by_of, seat_at
-from stakes.actions.correcting import LEFT_TO_THEIR_OWN_PAGES, needed
-from stakes.kinds.correcting import Withdrawn
 from stakes.models import Entry, Record
-from stakes.record import Refused, Said, TimeKnown, append
-from stakes.record.kinds import fact_from
+from stakes.record import Refused, Said, TimeKnown
 
 
 class PhoneItem(Item, forbid_unknown_fields=True, kw_only=True):
@@ -49,16 +57,14 @@ class Sync(msgspec.Struct):
 @open_to(Who.SIGNED_IN)
 @extend_schema(request=OpenApiTypes.OBJECT, responses={200: OpenApiTypes.OBJECT})
 @api_view(["POST"])
+@parser_classes([BoundedJSON])
 @refusals
 def phone(request: Request) -> Response:
     """Take what a phone has kept; answer for every key, and with each job's head."""
-    try:
-        sync = msgspec.convert(request.data, Sync)
-    except msgspec.ValidationError as error:
-        raise Refused(f"This cannot be read: {error}.", code="unreadable") from error
+    sync = _sync(request.data)
     if len(sync.items) > MOST_ITEMS:
         raise Refused(f"Send at most {MOST_ITEMS} at once.", code="too many")
-    offset = timezone.now() - _aware(sync.sent_at)
+    offset = timezone.now() - in_utc(sync.sent_at, "sent_at")
     person: User = request.user
     outcomes = [_outcome(person, sync.device, offset, sent) for sent in sync.items]
     jobs = {o["job"] for o in outcomes if o.get("job")}
@@ -66,11 +72,22 @@ def phone(request: Request) -> Response:
     return Response({"outcomes": outcomes, "heads": heads})
 
 
+def _sync(sent: Any) -> Sync:
+    """The frame around the items, each of which is read, or not, by itself."""
+    frame = sent if isinstance(sent, dict) else {}
+    around = {name: frame[name] for name in frame if name != "items"}
+    items = frame.get("items")
+    readable(around | {"items": []}, Sync)
+    if not isinstance(items, list):
+        raise Refused("Send what was kept as a list called items.", code="unreadable")
+    return msgspec.convert(around | {"items": items}, Sync)
+
+
 def _outcome(person: User, device: str, offset: timedelta, sent: Any) -> dict[str, Any]:
     try:
-        item = msgspec.convert(sent, PhoneItem)
-    except msgspec.ValidationError as error:
-        return _unreadable(person, sent, str(error))
+        item = readable(sent, PhoneItem)
+    except Refused as refused:
+        return _unreadable(person, sent, refused)
     told = {"key": str(item.key), "job": item.job}
     try:
         return told | admit(person, device, offset, item)
@@ -85,11 +102,12 @@ def admit(
 ) -> dict[str, Any]:
     """Append one item as its person; raises Refused when it must wait or conflicts."""
     record = Record.objects.filter(number=item.job).first()
-    at = _aware(item.device_time) + offset
+    device_time = in_utc(item.device_time, "device_time")
+    at = in_utc(device_time + offset, "device_time")
     before = Entry.objects.filter(record=record, key=item.key).first()
     if before is not None:
         # A later sync measures the clock a little otherwise; the first one counts.
-        at, offset = before.happened_at, before.happened_at - _aware(item.device_time)
+        at, offset = before.happened_at, before.happened_at - device_time
     seat = seat_at(record, person, at) if record else None
     if record is None or seat is None:
         raise Refused(
@@ -97,25 +115,20 @@ def admit(
             do="The office looks at it; nothing is lost.",
             code="no seat",
         )
-    if item.kind in LEFT_TO_THEIR_OWN_PAGES or needed(item.kind) not in seat.rights:
-        raise Refused(
-            f"{item.kind!r} takes a right your seat did not have then.",
-            code="not yours",
-        )
     said = Said(
-        fact=Withdrawn() if item.withdraws else fact_from(item.kind, item.facts),
+        fact=fact_of(item),
         at=at,
         known=item.known,
         time_known=TimeKnown.DEVICE,
         key=item.key,
         counter=item.counter,
-        device_time=_aware(item.device_time),
+        device_time=device_time,
         clock_offset_ms=int(offset.total_seconds() * 1000),
         corrects=item.corrects,
         withdraws=item.withdraws,
         why=item.why,
     )
-    [entry] = append(record, said, by=by_of(person, device))
+    entry = say(record, said, by=by_of(person, device), rights=seat.rights)
     return {
         "outcome": "already" if before else "recorded",
         "number": entry.number,
@@ -126,21 +139,26 @@ def _wait(
     person: User, key: uuid.UUID, job: str, sent: Any, refused: Refused
 ) -> dict[str, Any]:
     """Keep it for the office; sent again it is the same item."""
-    TrayItem.objects.get_or_create(
+    kept, _ = TrayItem.objects.get_or_create(
         key=key,
         defaults={"person": person, "job": job, "sent": sent, "reason": str(refused)},
     )
+    if (kept.person_id, kept.sent) != (person.pk, sent):
+        # Saying "waiting" here would lose it: the place is taken by other words.
+        taken = Refused(
+            "The same key waits already with something else.",
+            do="Send it again under a key of its own.",
+            code="conflict",
+        )
+        return {"outcome": "conflict", **refusal(taken)}
     return {"outcome": "waiting", **refusal(refused)}
 
 
-def _unreadable(person: User, sent: Any, why: str) -> dict[str, Any]:
+def _unreadable(person: User, sent: Any, refused: Refused) -> dict[str, Any]:
     """Even what cannot be read is kept, under its key or one made from its words."""
-    words = msgspec.json.encode(sent, order="sorted")
-    key = uuid.uuid5(person.pk, words.decode(errors="replace"))
-    named = sent.get("key") if isinstance(sent, dict) else None
-    refused = Refused(f"The item cannot be read: {why}.", code="unreadable")
-    return {"key": named, **_wait(person, key, "", sent, refused)}
-
-
-def _aware(moment: datetime) -> datetime:
-    return moment if moment.tzinfo else moment.replace(tzinfo=UTC)
+    words = json.dumps(sent, sort_keys=True)
+    key = uuid.uuid5(person.pk, words)
+    # As plain ASCII text where the database could not hold the thing itself.
+    holdable = isinstance(sent, dict) and not unsound(sent)
+    kept = sent if holdable else {"words": words}
+    return {"key": named(sent), **_wait(person, key, "", kept, refused)}
