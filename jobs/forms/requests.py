@@ -11,6 +11,8 @@ from jobs.forms.asking import LONG, Keyed, LocalMoment, MarkList
 from jobs.kinds.requests import AskSort
 from stakes.models import Record
 
+BUILT = [("no", "No"), ("yes", "Yes"), ("unknown", "Not known")]
+
 
 class RequestForm(Keyed):
     sort = forms.ChoiceField(
@@ -35,11 +37,15 @@ class RequestForm(Keyed):
             )
         self.fields |= {
             "listed": MarkList(record=record, label="Which marks", required=False),
-            "built_from": forms.CharField(
+            "built": forms.ChoiceField(
                 label="Has anything been built from them?",
                 required=False,
-                max_length=500,
+                choices=BUILT,
+                widget=forms.RadioSelect,
                 help_text="If so, telephone the survey firm now; do not wait for this.",
+            ),
+            "built_from": forms.CharField(
+                label="What was built", required=False, max_length=500
             ),
             "words": forms.CharField(
                 label="In your words",
@@ -75,6 +81,16 @@ class RequestForm(Keyed):
             ),
             "photo": forms.FileField(label="Photo", required=False),
         }
+
+    def clean(self) -> dict[str, Any]:
+        """Words alone say yes; "no" leaves none behind that would raise an alarm."""
+        said = super().clean()
+        built = said.pop("built", "")
+        if built == "yes" and not said.get("built_from"):
+            self.add_error("built_from", "Say what was built, and from which stakes.")
+        if built == "no":
+            said["built_from"] = ""
+        return said
 
 
 class AcceptForm(Keyed):

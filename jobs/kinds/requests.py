@@ -11,6 +11,7 @@ import msgspec
 
 from stakes.kinds.photos import photo_links
 from stakes.record import Fact, MarkLink, MatterLink, kind
+from stakes.standing import effects
 
 Moment = Annotated[datetime, msgspec.Meta(tz=True)]
 Sha256 = Annotated[str, msgspec.Meta(pattern="^[0-9a-f]{64}$")]
@@ -29,7 +30,8 @@ class RequestMade(_OfRequest, frozen=True, kw_only=True):
     """Somebody asked for stakes: which, needed by when, what they saw, what is built.
 
     `earliest` is worked out from the notice rule in force when it was received; only
-    the manager's acceptance promises a date. Telephone and remarks are private parts.
+    the manager's acceptance promises a date. `built_from` is empty when nothing was
+    built; otherwise it says what. Telephone and remarks are private parts.
     """
 
     sort: AskSort
@@ -50,7 +52,8 @@ class RequestMade(_OfRequest, frozen=True, kw_only=True):
     photos: tuple[Sha256, ...] = ()
 
     def marks(self) -> Iterable[MarkLink]:
-        return [MarkLink(mark, "asked for") for mark in self.listed]
+        effect = effects.BUILT_FROM if self.built_from else ""
+        return [MarkLink(mark, "asked for", effect) for mark in self.listed]
 
     def matters(self) -> Iterable[MatterLink]:
         yield MatterLink("request", self.ask)
