@@ -1,4 +1,4 @@
-"""What may be read: jobs, marks, history, record, requests, visits, handovers, holds."""
+"""What may be read: jobs, marks, history, record, checks, visits, handovers, holds."""
 
 from __future__ import annotations
 
@@ -18,7 +18,6 @@ from jobs.declared import Who, open_to
 from jobs.pages.handovers import handovers_seen
 from jobs.pages.holds import holds_seen
 from jobs.queries.jobs import jobs_of
-from jobs.queries.requests import requests_seen
 from jobs.queries.visits import visits_seen
 from stakes.can import Can, needs
 from stakes.models import Check, Entry
@@ -44,7 +43,7 @@ def jobs(request: Request) -> Response:
 
 
 @needs(Can.READ)
-@ANYTHING
+@extend_schema(operation_id="jobs_marks_list", responses={200: OpenApiTypes.OBJECT})
 @api_view(["GET"])
 @refusals
 def marks(request: Request, job: str) -> Response:
@@ -140,14 +139,6 @@ def checks(request: Request, job: str) -> Response:
     """Checks of stakes as they are judged now, the latest first."""
     rows = Check.objects.filter(record=asked(request).record).order_by("-made_at")
     return Response({"checks": list(rows.values()[: limit(request)])})
-
-
-@needs(Can.READ)
-@ANYTHING
-@api_view(["GET"])
-def requests(request: Request, job: str) -> Response:
-    """Requests the reader may see."""
-    return _rows("requests", requests_seen(asked(request)), request)
 
 
 @needs(Can.SEE_VISITS)
