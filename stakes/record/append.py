@@ -350,6 +350,7 @@ def _as_told(said: Said, told: Told | None) -> Said:
     return replace(
         said,
         known=told.known or said.known,
+        time_known=said.time_known or told.time_known,
         counter=said.counter or told.counter,
         device_time=said.device_time if own_clock else told.device_time,
         clock_offset_ms=said.clock_offset_ms if own_clock else told.clock_offset_ms,

@@ -26,13 +26,14 @@ class Told:
     """What a device says of a statement: its own clock and order, how it is known.
 
     `clock_offset_ms` was measured when it was sent and is what `happened_at` was moved
-    by. `admitted_by` let a statement in that nobody could admit when it came.
+    by, unless `time_known` says otherwise. `admitted_by` let a statement in that nobody could admit when it came.
     """
 
     device_time: datetime | None = None
     clock_offset_ms: int | None = None
     counter: int = 0
     known: Known | None = None
+    time_known: TimeKnown | None = None
     admitted_by: str = ""
 
 
