@@ -6,7 +6,6 @@ from collections.abc import Callable
 from functools import wraps
 from typing import Any
 
-from rest_framework.exceptions import ValidationError
 from rest_framework.request import Request
 from rest_framework.response import Response
 
@@ -16,16 +15,22 @@ from stakes.record import Refused
 
 MOST = 500
 
+UNREADABLE = frozenset(
+    {"unreadable", "unreadable facts", "unreadable moment", "unknown kind", "too many"}
+)
+"""Codes of what cannot be judged at all; the others are a no to what was understood."""
+
 
 def refusals(view: Callable[..., Response]) -> Callable[..., Response]:
-    """A Refused becomes 409 with its sentences and code."""
+    """A Refused becomes 409 with its sentences and code, or 422 when unreadable."""
 
     @wraps(view)
     def answered(request: Request, *args: Any, **kwargs: Any) -> Response:
         try:
             return view(request, *args, **kwargs)
         except Refused as refused:
-            return Response(refusal(refused), status=409)
+            status = 422 if refused.code in UNREADABLE else 409
+            return Response(refusal(refused), status=status)
 
     return answered
 
@@ -50,7 +55,10 @@ def moment(request: Request) -> Moment:
     try:
         return moment_of(request._request, asked(request).record)
     except OverflowError as error:
-        raise ValidationError({"at": "No job has such a year."}) from error
+        raise _unreadable("No job has such a year.", "at") from error
+    except Refused as refused:
+        refused.code = "unreadable"
+        raise
 
 
 def limit(request: Request) -> int:
@@ -62,5 +70,9 @@ def number(request: Request, name: str, default: int) -> int:
     if not text:
         return default
     if not (text.isascii() and text.isdigit() and len(text) < 16):
-        raise ValidationError({name: f"{text[:40]!r} is not a whole number."})
+        raise _unreadable(f"{text[:40]!r} is not a whole number.", name)
     return int(text)
+
+
+def _unreadable(what: str, field: str) -> Refused:
+    return Refused(what, field=field, code="unreadable")

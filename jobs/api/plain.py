@@ -45,7 +45,7 @@ def _text(text: str) -> None:
     if len(text) > LONGEST_TEXT:
         raise unreadable(f"A text has {len(text)} letters; at most {LONGEST_TEXT}.")
     if "\x00" in text or any("\ud800" <= letter <= "\udfff" for letter in text):
-        raise unreadable(f"{ascii(text[:40])} holds letters that are none.")
+        raise unreadable(f"{text[:40]!a} holds letters that are none.")
 
 
 def _members(value: dict[Any, Any] | list[Any], depth: int) -> None:

@@ -4,19 +4,19 @@ from __future__ import annotations
 
 from typing import Any
 
-from drf_spectacular.types import OpenApiTypes
 from drf_spectacular.utils import extend_schema
 from rest_framework.request import Request
 from rest_framework.response import Response
 from rest_framework.views import APIView
 
+from jobs.api import shapes
 from jobs.api.asking import asked, refusal
-from jobs.api.items import MOST_ITEMS, Item, fact_of, in_utc, named, readable, say
+from jobs.api.items import MOST_ITEMS, Item, in_utc, named, readable
 from jobs.api.parsing import BoundedJSON, Unreadable, body_of
 from jobs.api.reading import record_after
+from jobs.api.saying import say
 from stakes.can import Asked, Can, needs
-from stakes.models import Entry
-from stakes.record import Refused, Said
+from stakes.record import Refused
 
 
 class RecordView(APIView):
@@ -25,15 +25,15 @@ class RecordView(APIView):
     parser_classes = [BoundedJSON]
 
     @needs(Can.READ_RECORD)
-    @extend_schema(responses={200: OpenApiTypes.OBJECT})
+    @extend_schema(parameters=shapes.RECORD_ASKED, responses=shapes.RecordPart)
     def get(self, request: Request, job: str) -> Response:
-        """Entries after a number, in order (?after=N&limit=)."""
+        """Entries after a number, in order (?after=N&limit=&kind=)."""
         return record_after(request)
 
     @needs(Can.RECORD)
-    @extend_schema(request=OpenApiTypes.OBJECT, responses={200: OpenApiTypes.OBJECT})
+    @extend_schema(request=shapes.Items, responses=shapes.Outcomes)
     def post(self, request: Request, job: str) -> Response:
-        """Add statements, {items: [...]}; each has its own outcome."""
+        """Add statements, {items: [...]}; each takes the right of its own kind."""
         sent = body_of(request)
         items = sent.get("items") if isinstance(sent, dict) else None
         if not isinstance(items, list) or not 0 < len(items) <= MOST_ITEMS:
@@ -47,24 +47,10 @@ def outcome(who: Asked, sent: Any) -> dict[str, Any]:
     """What became of one item: recorded, already, or refused with its sentences."""
     told = {"key": named(sent)}
     try:
-        return told | _recorded(who, readable(sent, Item))
+        item = readable(sent, Item)
+        at = in_utc(item.happened_at, "happened_at") if item.happened_at else None
+        spoken = say(who, item, at)
     except Refused as refused:
         word = "conflict" if refused.code == "conflict" else "refused"
         return told | {"outcome": word, **refusal(refused)}
-
-
-def _recorded(who: Asked, item: Item) -> dict[str, Any]:
-    before = Entry.objects.filter(record=who.record, key=item.key).exists()
-    at = in_utc(item.happened_at, "happened_at") if item.happened_at else None
-    said = Said(
-        fact=fact_of(item),
-        at=at,
-        known=item.known,
-        key=item.key,
-        counter=item.counter,
-        corrects=item.corrects,
-        withdraws=item.withdraws,
-        why=item.why,
-    )
-    entry = say(who.record, said, by=who.by, rights=who.rights)
-    return {"outcome": "already" if before else "recorded", "number": entry.number}
+    return told | {"outcome": spoken.outcome, "number": spoken.entry.number}

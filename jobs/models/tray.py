@@ -8,12 +8,20 @@ from jobs.models.people import User
 
 
 class TrayItem(models.Model):
-    """One statement as it was sent, who sent it, and why it waits."""
+    """One statement as it was sent, who sent it, and why it waits.
 
-    key = models.UUIDField(unique=True)
+    `sent` is its JSON as text: whatever a device sends can be kept, also what no JSON
+    column would hold. The clock's offset is that of the first sending, so that what is
+    admitted later still happened when it happened.
+    """
+
+    key = models.UUIDField()
     person = models.ForeignKey(User, models.PROTECT)
     job = models.CharField(max_length=40, blank=True)
-    sent = models.JSONField()
+    sent = models.TextField()
+    sha256 = models.CharField(max_length=64, default="")
+    device = models.CharField(max_length=64, blank=True)
+    clock_offset_ms = models.BigIntegerField(default=0)
     reason = models.TextField()
     received_at = models.DateTimeField(auto_now_add=True)
     settled_at = models.DateTimeField(null=True)
@@ -21,7 +29,13 @@ class TrayItem(models.Model):
     outcome = models.TextField(blank=True)
 
     class Meta:
-        ordering = ["received_at"]
+        ordering = ["received_at", "pk"]
+        constraints = [
+            # Sent again it is the same item; other words under its key are another.
+            models.UniqueConstraint(
+                fields=["person", "key", "sha256"], name="trayitem_words"
+            )
+        ]
 
     def __str__(self) -> str:
         return f"{self.job} {self.key}"

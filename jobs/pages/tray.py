@@ -2,42 +2,39 @@
 
 from __future__ import annotations
 
-from datetime import timedelta
-
-import msgspec
 from django.http import HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, render
 from django.urls import reverse
-from django.utils import timezone
 
-from jobs.api.phone import PhoneItem, admit
+from jobs.api.admitting import admit_waiting
+from jobs.api.tray import set_aside
 from jobs.declared import Who, open_to
 from jobs.forms.requests import ReasonForm
 from jobs.models import TrayItem
 from jobs.pages.answer import answer, do, sent
 from stakes.record import Refused
 
+SHOWN = 200
+
 
 @open_to(Who.OFFICE)
 def tray(request: HttpRequest) -> HttpResponse:
     waiting = TrayItem.objects.filter(settled_at=None).select_related("person")
-    return render(request, "jobs/tray.html", {"waiting": waiting})
+    settled = TrayItem.objects.exclude(settled_at=None).order_by("-settled_at")
+    context = {"waiting": waiting[:SHOWN], "settled": settled[:20]}
+    return render(request, "jobs/tray.html", context)
 
 
 @open_to(Who.OFFICE)
 def tray_admit(request: HttpRequest, item: int) -> HttpResponse:
-    """Try again: a seat may have been given meanwhile for the time it happened."""
+    """Let it into the record of the job it belongs to, as who said it."""
     one = get_object_or_404(TrayItem, pk=item, settled_at=None)
 
     def act() -> None:
         if request.method != "POST":
             raise Refused("Press the button to admit it.")
-        try:
-            said = msgspec.convert(one.sent, PhoneItem)
-        except msgspec.ValidationError as error:
-            raise Refused(f"It cannot be read: {error}.", do="Set it aside.") from error
-        told = admit(one.person, "", timedelta(0), said)
-        _settle(one, request, f"entry {told['number']}")
+        job = request.POST.get("job", "").replace("\x00", "")[:40]
+        admit_waiting(one, job=job, by=request.user)
 
     return do(request, act, to=reverse("jobs:tray"), said="It is in the record now.")
 
@@ -50,16 +47,10 @@ def tray_aside(request: HttpRequest, item: int) -> HttpResponse:
     return answer(
         request,
         form,
-        lambda: _settle(one, request, form.cleaned_data["reason"]),
+        lambda: set_aside(one, reason=form.cleaned_data["reason"], by=request.user),
         to=reverse("jobs:tray"),
         said="It is set aside, and kept.",
         title="Set it aside",
         lead=one.reason,
         verb="Set it aside",
-    )
-
-
-def _settle(one: TrayItem, request: HttpRequest, outcome: str) -> None:
-    TrayItem.objects.filter(pk=one.pk, settled_at=None).update(
-        settled_at=timezone.now(), settled_by=request.user.name, outcome=outcome
     )

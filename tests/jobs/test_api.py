@@ -181,5 +181,5 @@ def test_a_number_that_is_none_is_told(site, query) -> None:
     answer = client_of(cast.manager).get(
         reverse("api:marks", args=[record.number]), query
     )
-    assert answer.status_code == 400
+    assert answer.status_code == 422
     assert "not a whole number" in answer.content.decode()

@@ -119,9 +119,9 @@ def test_what_cannot_be_admitted_waits_and_the_office_settles_it(site) -> None:
 def test_an_unreadable_sync_is_told_and_not_half_kept(site) -> None:
     _, _, _, client = site
     answer = client.post(reverse("api:phone"), "[]", content_type="application/json")
-    assert answer.status_code == 409
+    assert answer.status_code == 422
     answer = client.post(reverse("api:phone"), "{", content_type="application/json")
-    assert answer.status_code == 400
+    assert answer.status_code == 422
 
 
 @settings(
