@@ -12,6 +12,9 @@ class JobsConfig(AppConfig):
     def ready(self) -> None:
         from jobs import folds, kinds  # noqa: F401  (they register themselves)
         from jobs.kinds.corrected_by import register
-        from jobs.queries import cards, days_cards, days_needing  # noqa: F401
+        from jobs.queries import days_cards, days_needing  # noqa: F401
+
+        # Cards stand in the order they are added: what presses before what is agreed.
+        from jobs.queries import cards  # noqa: F401  # isort: skip
 
         register()

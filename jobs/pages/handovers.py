@@ -98,6 +98,7 @@ def handover_make(request: HttpRequest, job: str) -> HttpResponse:
         back=reverse("jobs:handovers", kwargs={"job": job}),
         body_class="" if asked.can(Can.PLAN) else "field",
         ask=ask,
+        visit=visit,
         lacking=lacking(asked.record, [UUID(m) for m in listed]) if listed else [],
     )
 

@@ -230,6 +230,7 @@ def visit_arrive(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
         title="On site",
         verb="Record the arrival",
         body_class="field",
+        one=one,
     )
 
 
@@ -253,6 +254,7 @@ def visit_wait(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
         title="Standing by",
         verb="Record the wait",
         body_class="field",
+        one=one,
     )
 
 
@@ -271,6 +273,7 @@ def visit_leave(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
         title="Leaving the site",
         verb="Record it",
         body_class="field",
+        one=one,
     )
 
 
@@ -297,6 +300,7 @@ def task_end(request: HttpRequest, job: str, visit: UUID, task: UUID) -> HttpRes
         lead=planned.get("words", ""),
         verb="Record it",
         body_class="field",
+        one=one,
     )
 
 

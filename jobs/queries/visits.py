@@ -6,6 +6,7 @@ from typing import Any
 
 from django.db.models import QuerySet
 
+from jobs.kinds.visits import VisitCancelled, VisitPlanned
 from jobs.models import Visit
 from jobs.queries.companies import companies_seen
 from jobs.queries.requests import requests_seen
@@ -53,10 +54,17 @@ def _asks_of(visit: Visit) -> set[str]:
 
 
 def day_of(asked: Asked, visit: Visit) -> list[tuple[Line, list[str]]]:
-    """Everything recorded on a visit, with the marks it names; the firm's own reading."""
+    """What was recorded on a visit, with the marks it names; the firm's own reading.
+
+    Planning it is none of the day's work.
+    """
     if not asked.can(Can.READ_RECORD):
         return []
-    said = entries(asked.record, thing="visit", key=visit.key)
+    said = [
+        c
+        for c in entries(asked.record, thing="visit", key=visit.key)
+        if not isinstance(c.fact, VisitPlanned | VisitCancelled)
+    ]
     named: dict[int, list[str]] = {}
     names = labels(asked.record)
     links = EntryMark.objects.filter(
