@@ -6,9 +6,10 @@ from collections.abc import Sequence
 from datetime import datetime
 
 from jobs.notices import notify
+from jobs.queries.between import without_others
 from jobs.queries.terms import terms_at, today
 from stakes.models import Record
-from stakes.queries import tolerance
+from stakes.queries import history, tolerance
 from stakes.record import folds
 
 
@@ -17,6 +18,8 @@ def hand_down() -> None:
     tolerance.SOURCE = tolerance_classes
     if notify not in folds.AFTER_APPEND:
         folds.AFTER_APPEND.append(notify)
+    if without_others not in history.KEPT_FROM:
+        history.KEPT_FROM.append(without_others)
 
 
 def tolerance_classes(

@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from datetime import datetime, timedelta
 from uuid import UUID
 
+from stakes.can import Asked, Can
 from stakes.models import EntryMark, Mark, PrivatePart, Record
 from stakes.record import Counted, entries
 from stakes.record.lengths import Measured
@@ -67,6 +69,23 @@ def of_mark(
     return [
         line(c, tuple(roles.get(c.number, ())), remarks.get(c.number, "")) for c in said
     ]
+
+
+KEPT_FROM: list[Callable[[Asked, list[Line]], list[Line]]] = []
+"""Each takes out the lines a reader is not to be told. `jobs` knows the companies."""
+
+
+def told_of_mark(
+    asked: Asked, mark: UUID, at: datetime | None = None, known: int | None = None
+) -> list[Line]:
+    """A mark's history as this reader may have it: remarks and what no longer counts
+    are for readers of the whole record."""
+    whole = asked.can(Can.READ_RECORD)
+    lines = of_mark(asked.record, mark, at, known, with_remarks=whole)
+    lines = lines if whole else [x for x in lines if x.counts]
+    for keep_from in KEPT_FROM:
+        lines = keep_from(asked, lines)
+    return lines
 
 
 def line(said: Counted, roles: tuple[str, ...] = (), remark: str = "") -> Line:

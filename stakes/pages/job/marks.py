@@ -79,14 +79,11 @@ def mark(request: HttpRequest, job: str, mark: UUID) -> HttpResponse:
     view = state.marks.get(mark)
     if view is None:
         raise Http404
-    whole = asked.can(Can.READ_RECORD)
-    lines = history.of_mark(
-        asked.record, mark, moment.at, moment.known, with_remarks=whole
-    )
+    lines = history.told_of_mark(asked, mark, moment.at, moment.known)
     context = {
         "view": view,
         "sign": row(view)["sign"],
-        "lines": lines if whole else [x for x in lines if x.counts],
+        "lines": lines,
         "drawing": timeline([_dot(x) for x in lines], view.label),
         "below": rests_on(state, mark),
         "above": rests_on_it(state, mark),
@@ -95,7 +92,7 @@ def mark(request: HttpRequest, job: str, mark: UUID) -> HttpResponse:
         "moment": moment.words,
         "shown_at": moment,
         "trouble": trouble,
-        "whole": whole,
+        "whole": asked.can(Can.READ_RECORD),
     }
     return render(request, "stakes/job/mark.html", context)
 
