@@ -11,7 +11,7 @@ from rest_framework.response import Response
 
 from stakes.can import Asked
 from stakes.pages.moment import Moment, moment_of
-from stakes.record import Refused
+from stakes.record import KINDS, Refused
 
 MOST = 500
 
@@ -72,6 +72,12 @@ def number(request: Request, name: str, default: int) -> int:
     if not (text.isascii() and text.isdigit() and len(text) < 16):
         raise _unreadable(f"{text[:40]!r} is not a whole number.", name)
     return int(text)
+
+
+def known_kind(kind: str) -> str:
+    if kind not in KINDS:
+        raise _unreadable(f"There is no kind of entry called {kind[:60]!r}.", "kind")
+    return kind
 
 
 def _unreadable(what: str, field: str) -> Refused:

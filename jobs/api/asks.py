@@ -7,13 +7,13 @@ from typing import Annotated, Any
 from uuid import UUID
 
 import msgspec
-from drf_spectacular.types import OpenApiTypes
 from drf_spectacular.utils import extend_schema
 from rest_framework.request import Request
 from rest_framework.response import Response
 from rest_framework.views import APIView
 
 from jobs.actions.requests import MOST_MARKS, make_request
+from jobs.api import shapes
 from jobs.api.asking import asked, limit, refusal, refusals
 from jobs.api.parsing import BoundedJSON, Unreadable, body_of
 from jobs.api.plain import bounded, unreadable
@@ -59,7 +59,8 @@ class RequestsView(APIView):
     parser_classes = [BoundedJSON]
 
     @needs(Can.READ)
-    @extend_schema(responses={200: OpenApiTypes.OBJECT})
+    @extend_schema(parameters=[shapes.LIMIT], responses=shapes.Requests)
+    @refusals
     def get(self, request: Request, job: str) -> Response:
         """Requests the reader may see, the latest first."""
         who = asked(request)
@@ -68,8 +69,8 @@ class RequestsView(APIView):
 
     @needs(Can.REQUEST)
     @extend_schema(
-        request=OpenApiTypes.OBJECT,
-        responses={200: OpenApiTypes.OBJECT, 201: OpenApiTypes.OBJECT},
+        request=shapes.Asking,
+        responses={200: shapes.RequestNow, 201: shapes.RequestNow},
     )
     def post(self, request: Request, job: str) -> Response:
         """Ask for stakes; 201 when it is received, 200 when it was before."""

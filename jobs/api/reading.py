@@ -2,36 +2,32 @@
 
 from __future__ import annotations
 
-from typing import Any
 from uuid import UUID
 
-from drf_spectacular.types import OpenApiTypes
 from drf_spectacular.utils import extend_schema
 from rest_framework.decorators import api_view
 from rest_framework.exceptions import NotFound
 from rest_framework.request import Request
 from rest_framework.response import Response
 
-from jobs.api import wire
-from jobs.api.asking import asked, limit, moment, number, refusals
+from jobs.api import shapes, wire
+from jobs.api.asking import asked, known_kind, limit, moment, number, refusals
 from jobs.declared import Who, open_to
 from jobs.pages.handovers import handovers_seen
 from jobs.pages.holds import holds_seen
 from jobs.queries.jobs import jobs_of
-from jobs.queries.visits import visits_seen
+from jobs.queries.visits import tasks_seen, visits_seen
 from stakes.can import Can, needs
-from stakes.models import Check, Entry
+from stakes.models import Check, Entry, Mark
 from stakes.queries import ways
 from stakes.queries.drawing import in_order
+from stakes.queries.history import told_of_mark
 from stakes.queries.state import job_state
-from stakes.record import entries
 from stakes.record.reading import corrections, decoded
-
-ANYTHING = extend_schema(responses={200: OpenApiTypes.OBJECT})
 
 
 @open_to(Who.SIGNED_IN)
-@ANYTHING
+@extend_schema(responses=shapes.Jobs)
 @api_view(["GET"])
 def jobs(request: Request) -> Response:
     """The jobs whoever asks has a seat on."""
@@ -43,7 +39,11 @@ def jobs(request: Request) -> Response:
 
 
 @needs(Can.READ)
-@extend_schema(operation_id="jobs_marks_list", responses={200: OpenApiTypes.OBJECT})
+@extend_schema(
+    operation_id="jobs_marks_list",
+    parameters=shapes.MARKS_ASKED,
+    responses=shapes.Marks,
+)
 @api_view(["GET"])
 @refusals
 def marks(request: Request, job: str) -> Response:
@@ -71,7 +71,7 @@ def marks(request: Request, job: str) -> Response:
 
 
 @needs(Can.READ)
-@ANYTHING
+@extend_schema(parameters=shapes.MOMENT, responses=shapes.MarkNow)
 @api_view(["GET"])
 @refusals
 def mark(request: Request, job: str, mark: UUID) -> Response:
@@ -83,23 +83,23 @@ def mark(request: Request, job: str, mark: UUID) -> Response:
     return Response({"as_of": at.words, "mark": wire.mark(view, record)})
 
 
-@needs(Can.READ_RECORD)
-@ANYTHING
+@needs(Can.READ)
+@extend_schema(parameters=shapes.MOMENT, responses=shapes.History)
 @api_view(["GET"])
 @refusals
 def history(request: Request, job: str, mark: UUID) -> Response:
-    """Everything said of a mark, in the order of the facts."""
-    at = moment(request)
-    said = entries(
-        asked(request).record, mark=mark, at=at.at, known=at.known, all_said=True
-    )
-    if not said:
+    """What was said of a mark, in the order of the facts, as its page tells it."""
+    who, at = asked(request), moment(request)
+    if not Mark.objects.filter(record=who.record, key=mark).exists():
         raise NotFound
-    return Response({"as_of": at.words, "entries": [wire.entry(c) for c in said]})
+    lines = told_of_mark(who, mark, at.at, at.known)
+    whole = who.can(Can.READ_RECORD)
+    told = [wire.line(one, with_entry=whole) for one in lines]
+    return Response({"as_of": at.words, "lines": told})
 
 
 @needs(Can.READ)
-@ANYTHING
+@extend_schema(responses=shapes.Ways)
 @api_view(["GET"])
 @refusals
 def ways_back(request: Request, job: str, mark: UUID) -> Response:
@@ -133,57 +133,51 @@ def ways_back(request: Request, job: str, mark: UUID) -> Response:
 
 
 @needs(Can.READ_RECORD)
-@ANYTHING
+@extend_schema(parameters=[shapes.LIMIT], responses=shapes.Checks)
 @api_view(["GET"])
+@refusals
 def checks(request: Request, job: str) -> Response:
     """Checks of stakes as they are judged now, the latest first."""
-    rows = Check.objects.filter(record=asked(request).record).order_by("-made_at")
-    return Response({"checks": list(rows.values()[: limit(request)])})
+    rows = Check.objects.filter(record=asked(request).record)
+    found = rows.order_by("-made_at")[: limit(request)]
+    return Response({"checks": [wire.columns(row, wire.CHECK) for row in found]})
 
 
 @needs(Can.SEE_VISITS)
-@ANYTHING
+@extend_schema(parameters=[shapes.LIMIT], responses=shapes.Visits)
 @api_view(["GET"])
+@refusals
 def visits(request: Request, job: str) -> Response:
-    """Visits the reader may see."""
-    found = visits_seen(asked(request))
-    named = ("key", "crew", "starts_at", "ends_at", "arrived_at", "left_at", "ticket")
-    return Response({"visits": list(found.values(*named)[: limit(request)])})
+    """Visits the reader may see, with their own tasks."""
+    who = asked(request)
+    found = visits_seen(who)[: limit(request)]
+    told = [
+        wire.columns(visit, wire.VISIT)
+        | {"tasks": [wire.task(task) for task in tasks_seen(who, visit)]}
+        for visit in found
+    ]
+    return Response({"visits": told})
 
 
 @needs(Can.READ)
-@ANYTHING
+@extend_schema(parameters=[shapes.LIMIT], responses=shapes.Handovers)
 @api_view(["GET"])
+@refusals
 def handovers(request: Request, job: str) -> Response:
     """Handovers the reader may see."""
-    return _rows("handovers", handovers_seen(asked(request)), request)
+    found = handovers_seen(asked(request))[: limit(request)]
+    told = [wire.columns(row, wire.HANDOVER) for row in found]
+    return Response({"handovers": told})
 
 
 @needs(Can.SEE_HOLDS)
-@ANYTHING
+@extend_schema(parameters=[shapes.LIMIT], responses=shapes.Holds)
 @api_view(["GET"])
+@refusals
 def holds(request: Request, job: str) -> Response:
     """Holds the reader may see."""
-    found = [
-        {
-            "key": str(hold.key),
-            "in_force": hold.in_force,
-            "words": hold.words,
-            "sent_at": wire.moment(hold.sent_at),
-            "lifted_at": wire.moment(hold.lifted_at),
-        }
-        for hold in holds_seen(asked(request))
-    ]
-    return Response({"holds": found[: limit(request)]})
-
-
-def _rows(name: str, found: Any, request: Request) -> Response:
-    skipped = ("record_id",)
-    rows = [
-        {k: v for k, v in row.items() if k not in skipped}
-        for row in found.values()[: limit(request)]
-    ]
-    return Response({name: rows})
+    found = holds_seen(asked(request))[: limit(request)]
+    return Response({"holds": [wire.columns(row, wire.HOLD) for row in found]})
 
 
 def record_after(request: Request) -> Response:
@@ -191,6 +185,8 @@ def record_after(request: Request) -> Response:
     record = asked(request).record
     after = number(request, "after", 0)
     rows = Entry.objects.filter(record=record, number__gt=after).order_by("number")
+    if kind := request.query_params.get("kind", ""):
+        rows = rows.filter(kind=known_kind(kind))
     overruled = corrections(record)
     found = [wire.entry(decoded(e, overruled)) for e in rows[: limit(request)]]
     last = found[-1]["number"] if found else after

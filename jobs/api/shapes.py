@@ -210,6 +210,7 @@ class Line(s.Serializer[Any]):
     not_recorded = s.ListField(child=s.CharField())
     counts = s.BooleanField()
     overruled_by = s.IntegerField(allow_null=True)
+    remark = s.CharField(required=False)
     entry = Entry(required=False)
 
 
@@ -260,6 +261,19 @@ class Checks(s.Serializer[Any]):
     checks = Check(many=True)
 
 
+class Task(s.Serializer[Any]):
+    """A task of a visit; `ask` is the request it answers, for those who may open it."""
+
+    task = s.UUIDField()
+    sort = s.CharField()
+    words = s.CharField()
+    listed = s.ListField(child=s.UUIDField())
+    outcome = s.CharField(required=False)
+    sent_away_by = s.CharField(required=False)
+    remark = s.CharField(required=False)
+    ask = s.UUIDField(required=False)
+
+
 class Visit(s.Serializer[Any]):
     key = s.UUIDField()
     crew = s.CharField()
@@ -267,7 +281,9 @@ class Visit(s.Serializer[Any]):
     ends_at = s.DateTimeField(allow_null=True)
     arrived_at = s.DateTimeField(allow_null=True)
     left_at = s.DateTimeField(allow_null=True)
+    cancelled = s.CharField()
     ticket = s.CharField()
+    tasks = Task(many=True)
 
 
 class Visits(s.Serializer[Any]):
@@ -296,14 +312,67 @@ class Handovers(s.Serializer[Any]):
 
 class Hold(s.Serializer[Any]):
     key = s.UUIDField()
+    listed = s.ListField(child=s.UUIDField())
     in_force = s.ListField(child=s.UUIDField())
     words = s.CharField()
     sent_at = s.DateTimeField()
+    sent_by = s.CharField()
     lifted_at = s.DateTimeField(allow_null=True)
 
 
 class Holds(s.Serializer[Any]):
     holds = Hold(many=True)
+
+
+class Request(s.Serializer[Any]):
+    """A request as its reader may see it; who pays only for those who see prices."""
+
+    key = s.UUIDField()
+    sort = s.CharField()
+    company = s.UUIDField()
+    company_name = s.CharField()
+    asked_by = s.CharField()
+    listed = s.ListField(child=s.UUIDField())
+    words = s.CharField()
+    received_at = s.DateTimeField()
+    needed_by = s.DateTimeField(allow_null=True)
+    earliest = s.DateTimeField(allow_null=True)
+    built_from = s.CharField()
+    state = s.CharField()
+    promised_for = s.DateTimeField(allow_null=True)
+    visit = s.UUIDField(allow_null=True)
+    payer = s.CharField(required=False)
+    cost = s.CharField(required=False)
+    reason = s.CharField()
+    closed_at = s.DateTimeField(allow_null=True)
+    number = s.IntegerField()
+
+
+class Requests(s.Serializer[Any]):
+    requests = Request(many=True)
+
+
+class RequestNow(s.Serializer[Any]):
+    request = Request()
+
+
+class Asking(s.Serializer[Any]):
+    """A request to make; `company` is said by the office, which asks for others."""
+
+    key = s.UUIDField()
+    sort = s.ChoiceField(("lay out", "re-stake", "check", "explain"))
+    company = s.UUIDField(required=False)
+    listed = s.ListField(child=s.UUIDField(), required=False)
+    words = s.CharField(required=False)
+    needed_by = s.DateTimeField(required=False)
+    last_seen = s.CharField(required=False)
+    cause = s.CharField(required=False)
+    cause_by = s.CharField(required=False)
+    built_from = s.CharField(required=False)
+    sheet_words = s.CharField(required=False)
+    site_ready = s.CharField(required=False)
+    phone = s.CharField(required=False)
+    remark = s.CharField(required=False)
 
 
 class Kind(s.Serializer[Any]):

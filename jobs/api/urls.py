@@ -5,7 +5,7 @@ from __future__ import annotations
 from django.urls import path
 from drf_spectacular.views import SpectacularAPIView
 
-from jobs.api import asks, phone, points, reading, writing
+from jobs.api import asks, kinds, phone, points, reading, writing
 from jobs.api import schema as _schema  # noqa: F401  (registers itself)
 from jobs.declared import Who, open_to
 
@@ -14,6 +14,7 @@ urlpatterns = [
     path(
         "schema/", open_to(Who.SIGNED_IN)(SpectacularAPIView.as_view()), name="schema"
     ),
+    path("kinds/", kinds.kinds, name="kinds"),
     path("phone/", phone.phone, name="phone"),
     path("jobs/", reading.jobs, name="jobs"),
     path("jobs/<str:job>/marks/", reading.marks, name="marks"),

@@ -10,7 +10,7 @@ from rest_framework.response import Response
 from rest_framework.views import APIView
 
 from jobs.api import shapes
-from jobs.api.asking import asked, refusal
+from jobs.api.asking import asked, refusal, refusals
 from jobs.api.items import MOST_ITEMS, Item, in_utc, named, readable
 from jobs.api.parsing import BoundedJSON, Unreadable, body_of
 from jobs.api.reading import record_after
@@ -26,6 +26,7 @@ class RecordView(APIView):
 
     @needs(Can.READ_RECORD)
     @extend_schema(parameters=shapes.RECORD_ASKED, responses=shapes.RecordPart)
+    @refusals
     def get(self, request: Request, job: str) -> Response:
         """Entries after a number, in order (?after=N&limit=&kind=)."""
         return record_after(request)
