@@ -1,12 +1,9 @@
-"""Points out: comma text and GeoJSON of marks, as the record has them at a moment."""
+"""Points out: comma text of marks, as the record has them at a moment."""
 
 from __future__ import annotations
 
 import csv
 import io
-import json
-from collections.abc import Iterable
-from typing import Any
 
 from geometry.units import Length, Unit
 from stakes.queries.drawing import UNIT_NAMES, in_order
@@ -36,10 +33,24 @@ def comma_text(state: JobState) -> str:
     out = io.StringIO(newline="")
     writer = csv.writer(out)
     writer.writerow(HEADER)
-    known = state.known if state.known is not None else state.record.head
+    known = as_of_entry(state)
     for view in in_order(state.marks.values()):
         writer.writerow([*map(safe, _cells(view, state)), known])
     return out.getvalue()
+
+
+def comma_file(state: JobState, frame: str = "") -> str:
+    """The same below a comment that says what the columns cannot: job, unit, frame."""
+    # One line whatever they are called: a name cannot smuggle in rows of its own.
+    job, named = (" ".join(words.split()) for words in (state.record.number, frame))
+    unit = UNIT_NAMES[state.record.unit]
+    said = f"# job {job}, unit {unit}, frame {named or 'not recorded'}"
+    return f"{said}, as of entry {as_of_entry(state)}\r\n{comma_text(state)}"
+
+
+def as_of_entry(state: JobState) -> int:
+    """The number of the last entry a state knows."""
+    return state.record.head if state.known is None else state.known
 
 
 def safe(cell: str) -> str:
@@ -83,50 +94,3 @@ def in_unit(nanometres: str, unit: Unit) -> str:
     if not nanometres:
         return ""
     return Length.from_nanometres(int(nanometres), unit, 4).text
-
-
-def geojson(state: JobState) -> str:
-    """Marks with a place as points. Coordinates are easting, northing and elevation in
-    the job's own frame and unit, which is said beside them: not longitude, latitude."""
-    features = [
-        feature
-        for view in in_order(state.marks.values())
-        if (feature := _feature(view, state)) is not None
-    ]
-    known = state.known if state.known is not None else state.record.head
-    return json.dumps(
-        {
-            "type": "FeatureCollection",
-            "job": state.record.number,
-            "unit": UNIT_NAMES[state.record.unit],
-            "axes": ["easting", "northing", "elevation"],
-            "as_of_entry": known,
-            "features": features,
-        },
-        ensure_ascii=False,
-    )
-
-
-def _feature(view: MarkView, state: JobState) -> dict[str, Any] | None:
-    north, east, up = (in_unit(nm, state.record.length_unit) for nm in _places(view))
-    if not north or not east:
-        return None
-    return {
-        "type": "Feature",
-        "id": str(view.key),
-        "geometry": {"type": "Point", "coordinates": _numbers(east, north, up)},
-        "properties": {
-            "number": view.label,
-            "purpose": view.plan.purpose,
-            "carries": view.plan.carries,
-            "line": view.plan.line,
-            "stage": view.plan.stage,
-            "standing": str(view.standing),
-            "trust": str(view.trust.trust),
-            "held": view.held_back,
-        },
-    }
-
-
-def _numbers(*texts: str) -> Iterable[float]:
-    return [float(text) for text in texts if text]

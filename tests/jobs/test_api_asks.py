@@ -152,7 +152,9 @@ def test_comma_text_names_its_job_and_runs_nothing_in_a_spreadsheet(site) -> Non
     text = client_of(cast.auditor).get(f"{MARKS}.csv").content.decode()
     comment, rest = text.split("\r\n", 1)
     head = Entry.objects.filter(record=record).count()
-    assert comment == f"# job 2614, unit ft, as of entry {head}"
+    assert comment == (
+        f"# job 2614, unit ft, frame local site grid, as of entry {head}"
+    )
     lines = {line["number"]: line for line in csv.DictReader(io.StringIO(rest))}
     assert lines["'=1+1"]["northing"] == "-50.2500"
     assert lines["102"]["on the ground"] == "planned"

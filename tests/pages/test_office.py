@@ -498,7 +498,11 @@ def test_points_leave_as_comma_text_and_geojson(office: Office) -> None:
     assert "101,1050.5000,2100.0000,498.0000,ft,stake" in text
     assert "'=1+1" in text
     answer = office.client("surveyor").get(office.url("stakes:marks-geojson"))
-    assert answer.json()["features"][0]["geometry"]["coordinates"][0] in (2100.0, 2.0)
+    told = {f["properties"]["number"]: f for f in answer.json()["features"]}
+    # RFC 7946, section 4: coordinates are WGS 84 degrees, which a job's are not.
+    assert told["101"]["geometry"] is None
+    assert told["101"]["properties"]["easting"] == "2100.0000"
+    assert told["101"]["properties"]["unit"] == "ft"
     assert office.client("crew").get(office.url("stakes:marks-csv")).status_code == 403
 
 

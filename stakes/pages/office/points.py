@@ -5,8 +5,8 @@ from __future__ import annotations
 from django.http import HttpRequest, HttpResponse
 
 from stakes.can import Can, needs
+from stakes.exchange.geojson import geojson as as_geojson
 from stakes.exchange.writing import comma_text
-from stakes.exchange.writing import geojson as as_geojson
 from stakes.pages.moment import moment_of
 from stakes.queries.state import JobState, job_state
 from stakes.record import Refused
