@@ -32,10 +32,12 @@ from stakes.models import Mark
 
 @needs(Can.SEE_VISITS)
 def visits(request: HttpRequest, job: str) -> HttpResponse:
-    found = list(visits_seen(request.asked))
+    asked = request.asked
+    found = tasks_seen(asked, visits_seen(asked))
+    is_over = [bool(visit.left_at or visit.cancelled) for visit, _ in found]
     context = {
-        "coming": [v for v in found if not v.left_at and not v.cancelled],
-        "past": [v for v in found if v.left_at or v.cancelled],
+        "coming": [row for row, over in zip(found, is_over, strict=True) if not over],
+        "past": [row for row, over in zip(found, is_over, strict=True) if over],
     }
     return render(request, "jobs/visits.html", context)
 
@@ -75,7 +77,7 @@ def visit_plan(request: HttpRequest, job: str) -> HttpResponse:
         form,
         lambda: made.append(act.plan_visit(**_plan(asked, form.cleaned_data))),
         to=lambda: _to(job, made[0]),
-        said="The visit is planned, and its crew is told by mail.",
+        said="The visit is planned. Its crew is told by mail.",
         title="Plan a visit",
         verb="Plan it",
     )
@@ -127,7 +129,7 @@ def visit_move(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
         form,
         do,
         to=_to(job, visit),
-        said="The visit is planned anew, and its crew is told by mail.",
+        said="The visit is planned anew. Its crew is told by mail.",
         title="Move or change the visit",
         lead="A request that is unticked waits for another visit.",
         verb="Plan it anew",
@@ -168,7 +170,7 @@ def _tasks(said: dict) -> list[PlannedTask]:
 def visit_page(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
     asked = request.asked
     one = _one(asked, visit)
-    tasks = tasks_seen(asked, one)
+    [(_, tasks)] = tasks_seen(asked, [one])
     keys = [UUID(m) for t in tasks for m in t.get("listed", [])]
     marks = Mark.objects.filter(record=asked.record).in_bulk(keys)
     context = {

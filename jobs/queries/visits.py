@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from typing import Any
 
 from django.db.models import QuerySet
@@ -33,15 +34,23 @@ def asks_seen(asked: Asked) -> set[str]:
     return {str(key) for key in requests_seen(asked).values_list("key", flat=True)}
 
 
-def tasks_seen(asked: Asked, visit: Visit) -> list[dict[str, Any]]:
-    """The tasks of a visit that concern its reader, each with whether its request may
-    be opened."""
+def tasks_seen(
+    asked: Asked, visits: Iterable[Visit]
+) -> list[tuple[Visit, list[dict[str, Any]]]]:
+    """Visits with the tasks that concern their reader, each task with whether its
+    request may be opened; one query for all of them."""
     own = asks_seen(asked)
     all_of_them = companies_seen(asked) is None or asked.can(Can.RECORD)
     return [
-        task | {"opens": task.get("ask") in own}
-        for task in visit.tasks
-        if all_of_them or task.get("ask") in own
+        (
+            visit,
+            [
+                task | {"opens": task.get("ask") in own}
+                for task in visit.tasks
+                if all_of_them or task.get("ask") in own
+            ],
+        )
+        for visit in visits
     ]
 
 
