@@ -9,6 +9,7 @@ from jobs.pages import (
     handovers,
     holds,
     jobs,
+    on_site,
     people,
     requests,
     seats,
@@ -131,25 +132,27 @@ urlpatterns = [
     ),
     path(
         "jobs/<str:job>/visits/<uuid:visit>/arrive/",
-        visits.visit_arrive,
+        on_site.visit_arrive,
         name="visit-arrive",
     ),
     path(
-        "jobs/<str:job>/visits/<uuid:visit>/wait/", visits.visit_wait, name="visit-wait"
+        "jobs/<str:job>/visits/<uuid:visit>/wait/",
+        on_site.visit_wait,
+        name="visit-wait",
     ),
     path(
         "jobs/<str:job>/visits/<uuid:visit>/leave/",
-        visits.visit_leave,
+        on_site.visit_leave,
         name="visit-leave",
     ),
     path(
         "jobs/<str:job>/visits/<uuid:visit>/tasks/<uuid:task>/end/",
-        visits.task_end,
+        on_site.task_end,
         name="task-end",
     ),
     path(
         "jobs/<str:job>/visits/<uuid:visit>/ticket/",
-        visits.ticket_close,
+        on_site.ticket_close,
         name="ticket-close",
     ),
     path("jobs/<str:job>/handovers/", handovers.handovers, name="handovers"),

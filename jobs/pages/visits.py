@@ -1,4 +1,4 @@
-"""Visits: planned, on site, ended task by task, the day's ticket."""
+"""Visits: all of them, one of them, planned, moved, cancelled."""
 
 from __future__ import annotations
 
@@ -6,21 +6,14 @@ from typing import Any
 from uuid import UUID, uuid4
 
 import msgspec
+from django.db.models import QuerySet
 from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import render
 from django.urls import reverse
 
 from jobs.actions import visits as act
 from jobs.forms.requests import ReasonForm
-from jobs.forms.visits import (
-    ArriveForm,
-    LeaveForm,
-    OutcomeForm,
-    StandByForm,
-    TicketForm,
-    VisitForm,
-    VisitMoveForm,
-)
+from jobs.forms.visits import VisitForm, VisitMoveForm
 from jobs.kinds.visits import Member, PlannedTask
 from jobs.models import Crew, Request, Visit
 from jobs.pages.answer import answer, sent
@@ -42,18 +35,19 @@ def visits(request: HttpRequest, job: str) -> HttpResponse:
     return render(request, "jobs/visits.html", context)
 
 
-def _one(asked: Asked, visit: UUID) -> Visit:
+def one_visit(asked: Asked, visit: UUID) -> Visit:
+    """A visit its reader may see; everything else is not found."""
     one = visits_seen(asked).filter(key=visit).first()
     if one is None:
         raise Http404
     return one
 
 
-def _to(job: str, visit: UUID) -> str:
+def to_visit(job: str, visit: UUID) -> str:
     return reverse("jobs:visit", kwargs={"job": job, "visit": visit})
 
 
-def _to_place(asked: Asked):
+def _to_place(asked: Asked) -> QuerySet[Request]:
     """Requests that wait for a visit: accepted, or received and to be decided yet."""
     waiting = Request.objects.filter(
         record=asked.record, state__in=("received", "accepted")
@@ -76,7 +70,7 @@ def visit_plan(request: HttpRequest, job: str) -> HttpResponse:
         request,
         form,
         lambda: made.append(act.plan_visit(**_plan(asked, form.cleaned_data))),
-        to=lambda: _to(job, made[0]),
+        to=lambda: to_visit(job, made[0]),
         said="The visit is planned. Its crew is told by mail.",
         title="Plan a visit",
         verb="Plan it",
@@ -101,7 +95,7 @@ def _plan(asked: Asked, said: dict[str, Any]) -> dict[str, Any]:
 @needs(Can.SCHEDULE)
 def visit_move(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
     """Rain, a late pour, a sick rod person: the same visit at another time."""
-    asked, one = request.asked, _one(request.asked, visit)
+    asked, one = request.asked, one_visit(request.asked, visit)
     initial = {
         "crew": Crew.objects.filter(name=one.crew).first(),
         "starts_at": one.starts_at,
@@ -128,7 +122,7 @@ def visit_move(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
         request,
         form,
         do,
-        to=_to(job, visit),
+        to=to_visit(job, visit),
         said="The visit is planned anew. Its crew is told by mail.",
         title="Move or change the visit",
         lead="A request that is unticked waits for another visit.",
@@ -142,7 +136,7 @@ def _planned(task: dict[str, Any]) -> PlannedTask:
     return msgspec.convert({k: task[k] for k in named if k in task}, PlannedTask)
 
 
-def _members(crew) -> list[Member]:
+def _members(crew: Crew | None) -> list[Member]:
     if crew is None:
         return []
     chief = Member(
@@ -169,7 +163,7 @@ def _tasks(said: dict) -> list[PlannedTask]:
 @needs(Can.SEE_VISITS)
 def visit_page(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
     asked = request.asked
-    one = _one(asked, visit)
+    one = one_visit(asked, visit)
     [(_, tasks)] = tasks_seen(asked, [one])
     keys = [UUID(m) for t in tasks for m in t.get("listed", [])]
     marks = Mark.objects.filter(record=asked.record).in_bulk(keys)
@@ -192,7 +186,7 @@ def _is_ours(asked: Asked) -> bool:
 
 @needs(Can.SCHEDULE)
 def visit_cancel(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
-    asked, one = request.asked, _one(request.asked, visit)
+    asked, one = request.asked, one_visit(request.asked, visit)
     form = ReasonForm(sent(request))
     return answer(
         request,
@@ -200,128 +194,8 @@ def visit_cancel(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
         lambda: act.cancel_visit(
             record=asked.record, visit=one.key, by=asked.by, **form.cleaned_data
         ),
-        to=_to(job, visit),
+        to=to_visit(job, visit),
         said="The visit is cancelled.",
         title="Cancel the visit",
         verb="Cancel it",
-    )
-
-
-@needs(Can.RECORD)
-def visit_arrive(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
-    asked, one = request.asked, _one(request.asked, visit)
-    named = "\n".join(
-        f"{m['name']}, {m['duty']}" if m.get("duty") else m["name"] for m in one.members
-    )
-    form = ArriveForm(sent(request), record=asked.record, initial={"members": named})
-
-    def do() -> None:
-        said = dict(form.cleaned_data)
-        said["members"] = [
-            _member(line) for line in said["members"].splitlines() if line.strip()
-        ]
-        said["instruments"] = said["instruments"].splitlines()
-        act.arrive(record=asked.record, visit=one.key, by=asked.by, **said)
-
-    return answer(
-        request,
-        form,
-        do,
-        to=_to(job, visit),
-        said="Arrival recorded.",
-        title="On site",
-        verb="Record the arrival",
-        body_class="field",
-        one=one,
-    )
-
-
-def _member(line: str) -> Member:
-    name, _, duty = line.partition(",")
-    return Member(person="", name=name.strip(), duty=duty.strip())
-
-
-@needs(Can.RECORD)
-def visit_wait(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
-    asked, one = request.asked, _one(request.asked, visit)
-    form = StandByForm(sent(request), record=asked.record)
-    return answer(
-        request,
-        form,
-        lambda: act.stand_by(
-            record=asked.record, visit=one.key, by=asked.by, **form.cleaned_data
-        ),
-        to=_to(job, visit),
-        said="The wait is recorded.",
-        title="Standing by",
-        verb="Record the wait",
-        body_class="field",
-        one=one,
-    )
-
-
-@needs(Can.RECORD)
-def visit_leave(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
-    asked, one = request.asked, _one(request.asked, visit)
-    form = LeaveForm(sent(request), record=asked.record)
-    return answer(
-        request,
-        form,
-        lambda: act.leave(
-            record=asked.record, visit=one.key, by=asked.by, **form.cleaned_data
-        ),
-        to=_to(job, visit),
-        said="Leaving recorded.",
-        title="Leaving the site",
-        verb="Record it",
-        body_class="field",
-        one=one,
-    )
-
-
-@needs(Can.RECORD)
-def task_end(request: HttpRequest, job: str, visit: UUID, task: UUID) -> HttpResponse:
-    asked, one = request.asked, _one(request.asked, visit)
-    planned = next((t for t in one.tasks if t["task"] == str(task)), None)
-    if planned is None:
-        raise Http404
-    form = OutcomeForm(sent(request))
-    return answer(
-        request,
-        form,
-        lambda: act.end_task(
-            record=asked.record,
-            visit=one.key,
-            task=task,
-            by=asked.by,
-            **form.cleaned_data,
-        ),
-        to=_to(job, visit),
-        said="The outcome is recorded.",
-        title=f"How it ended: {planned['sort']}",
-        lead=planned.get("words", ""),
-        verb="Record it",
-        body_class="field",
-        one=one,
-    )
-
-
-@needs(Can.RECORD)
-def ticket_close(request: HttpRequest, job: str, visit: UUID) -> HttpResponse:
-    asked, one = request.asked, _one(request.asked, visit)
-    form = TicketForm(sent(request))
-    return answer(
-        request,
-        form,
-        lambda: act.close_ticket(
-            record=asked.record, visit=one.key, by=asked.by, **form.cleaned_data
-        ),
-        to=_to(job, visit),
-        said="The day's ticket is closed.",
-        title="The day's ticket",
-        verb="Close the ticket",
-        template="jobs/ticket.html",
-        body_class="field",
-        one=one,
-        day=day_of(asked, one),
     )

@@ -37,8 +37,7 @@ def asks_seen(asked: Asked) -> set[str]:
 def tasks_seen(
     asked: Asked, visits: Iterable[Visit]
 ) -> list[tuple[Visit, list[dict[str, Any]]]]:
-    """Visits with the tasks that concern their reader, each task with whether its
-    request may be opened; one query for all of them."""
+    """Visits, each with the tasks that concern the reader; one query for all."""
     own = asks_seen(asked)
     all_of_them = companies_seen(asked) is None or asked.can(Can.RECORD)
     return [
