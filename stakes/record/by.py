@@ -26,7 +26,8 @@ class Told:
     """What a device says of a statement: its own clock and order, how it is known.
 
     `clock_offset_ms` was measured when it was sent and is what `happened_at` was moved
-    by, unless `time_known` says otherwise. `admitted_by` let a statement in that nobody could admit when it came.
+    by, unless `time_known` says otherwise. `admitted_by` let a statement in that nobody
+    could admit when it came.
     """
 
     device_time: datetime | None = None
