@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
-from django.conf import settings
+from django.core.exceptions import RequestDataTooBig
 from rest_framework.exceptions import APIException, ParseError
 from rest_framework.parsers import JSONParser
 from rest_framework.request import Request
@@ -14,7 +14,7 @@ DEEPEST = 40
 
 
 class BoundedJSON(JSONParser):
-    """The usual parser, which neither nesting nor size can break."""
+    """The usual parser, which nesting cannot break."""
 
     def parse(
         self,
@@ -22,10 +22,6 @@ class BoundedJSON(JSONParser):
         media_type: str | None = None,
         parser_context: Mapping[str, Any] | None = None,
     ) -> Any:
-        request = (parser_context or {}).get("request")
-        length = request.META.get("CONTENT_LENGTH") if request else ""
-        if int(length or 0) > settings.DATA_UPLOAD_MAX_MEMORY_SIZE:
-            raise ParseError("This is more than can be taken at once: send less.")
         try:
             found = super().parse(stream, media_type, parser_context)
         except (RecursionError, LookupError) as error:
@@ -42,10 +38,19 @@ class Unreadable(APIException):
     default_code = "unreadable"
 
 
+class TooLarge(APIException):
+    """Django refused to read a body of this size."""
+
+    status_code = 413
+    default_code = "too large"
+
+
 def body_of(request: Request) -> Any:
-    """The parsed body; 422 with a sentence when it is no JSON."""
+    """The parsed body; 422 with a sentence when it is no JSON, 413 when too large."""
     try:
         return request.data
+    except RequestDataTooBig as error:
+        raise TooLarge("This is more than can be taken at once: send less.") from error
     except ParseError as error:
         raise Unreadable(error.detail) from error
 
