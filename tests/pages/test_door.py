@@ -6,6 +6,7 @@ import re
 from collections.abc import Iterator
 from contextlib import contextmanager
 from typing import Any
+from urllib.parse import quote
 
 import pytest
 from django.contrib.auth.models import AnonymousUser
@@ -272,3 +273,11 @@ def _content(answer: Any) -> str:
     if answer.streaming:
         return b"".join(answer.streaming_content).decode("utf-8", "replace")
     return answer.content.decode("utf-8", "replace")
+
+
+@pytest.mark.parametrize("tail", ["\x00/", "2614/?at=%00", "2614/marks/?standing=a%00"])
+def test_an_address_with_a_nul_in_it_leads_nowhere(world: World, tail: str) -> None:
+    path, _, query = tail.partition("?")
+    client = client_of(world.cast.surveyor)
+    answer = client.get(f"/jobs/{quote(path)}", QUERY_STRING=query)
+    assert answer.status_code == 404
