@@ -48,6 +48,15 @@ def test_a_zero_error_is_judged_by_its_own_spread():
     assert is_zero(-0.97, 1 / math.sqrt(5), 14).verdict is Verdict.FAIL
 
 
+@pytest.mark.parametrize(
+    ("dof", "quantile"), [(5, 2.571), (10, 2.228), (20, 2.086), (30, 2.042)]
+)
+def test_a_zero_error_is_allowed_the_published_quantile_of_its_spread(dof, quantile):
+    # NIST/SEMATECH e-Handbook 1.3.6.7.2, two-sided 95 %.
+    assert is_zero(0.0, 1.0, dof).high == pytest.approx(quantile, abs=5e-4)
+    assert is_zero(quantile + 0.001, 1.0, dof).verdict is Verdict.FAIL
+
+
 def test_the_ellipse_factor_is_the_published_one():
     # NIST/SEMATECH chi-square and F tables: 5.991, F(2,10) 4.103, F(2,20) 3.493.
     assert position_factor() ** 2 == pytest.approx(5.991, abs=1e-3)

@@ -287,3 +287,13 @@ def test_a_board_without_length_is_refused() -> None:
 def test_a_property_line_that_crosses_itself_is_named() -> None:
     with pytest.raises(BadOutline):
         setback_clearance(L_SHAPE, [(0, 0), (9, 9), (9, 0), (0, 9)], 1.0)
+
+
+def test_a_day_old_cut_in_the_best_soil_may_be_steeper_to_twelve_feet() -> None:
+    """29 CFR 1926 Subpart P App. B, table B-1 note: 1/2 to 1, at most 12 ft."""
+    foot = 0.3048
+    words = {"offset_m": 1.0, "step_m": 1.0, "workspace_m": 0.0}
+    shallow = plan_offsets(L_SHAPE, depth_m=12 * foot, soil=Soil.A_SHORT_TERM, **words)
+    assert shallow.excavation.reach_m == pytest.approx(6 * foot, abs=1e-9)
+    deeper = plan_offsets(L_SHAPE, depth_m=13 * foot, soil=Soil.A_SHORT_TERM, **words)
+    assert any("12 ft" in issue.sentence for issue in deeper.issues)

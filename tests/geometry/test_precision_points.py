@@ -326,3 +326,14 @@ def test_any_points_give_numbers_or_a_named_error(s, b, t, extra):
             assert str(error)
         else:
             assert np.isfinite(answer).all()
+
+
+def test_an_ellipse_has_the_axes_of_a_published_propagation() -> None:
+    # Mikhail & Ackermann, example 4.3: y = A x, worked by hand as C_xx = A^-1 C_yy A^-T.
+    a = np.linalg.inv(np.array([[2.0, 1.0], [1.0, 2.0]]))
+    covariance = a @ np.array([[3.0, 1.0], [1.0, 3.0]]) @ a.T
+    assert np.ones(2) @ covariance @ np.ones(2) == pytest.approx(8 / 9)
+    axes = ellipse(covariance, factor=1.0)
+    assert axes.semi_major_m == pytest.approx(math.sqrt(2))
+    assert axes.semi_minor_m == pytest.approx(2 / 3)
+    assert math.degrees(axes.azimuth_rad) == pytest.approx(135.0)
